@@ -1,0 +1,19 @@
+"""A served folder: the folder room handed the corridor and the register."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+from sheetqc import folder, register
+from sheetqc.pipeline import answer
+
+
+def watch(served: Path, *, once: bool = False, workers: int = 1) -> bool:
+    """Serves a folder until stopped, or answers what is there when `once`; True when something was returned."""
+    result = folder.serve(served, answer, once=once, workers=workers, after=renew_register)
+    return bool(result.returned)
+
+
+def renew_register(served: Path) -> None:
+    """Brings the register of a served folder up to date."""
+    register.write(register.collect(served), served / "register.xlsx")
