@@ -20,7 +20,7 @@ from itertools import count
 from pathlib import Path, PurePosixPath
 
 from sheetqc.folder.layout import Layout
-from sheetqc.folder.moves import move, patiently, put_back, remove, remove_tree, write_whole
+from sheetqc.folder.moves import is_there, move, patiently, put_back, remove, remove_tree, write_whole
 from sheetqc.folder.names import numbered, split, workable
 
 _numbers = count(1)
@@ -104,12 +104,12 @@ def take(layout: Layout, owner: str, path: Path) -> Claim | None:
         claim.file.parent.mkdir(parents=True)
         _write(claim)
         _move_in(path, claim)
-    except FileNotFoundError:
-        remove_tree(claim.folder)
-        return None
-    except BaseException:
-        if not claim.file.exists():
-            remove_tree(claim.folder)
+    except OSError as error:
+        if is_there(claim.file):  # some shares report a rename as failed that was done
+            return claim
+        drop(claim)
+        if isinstance(error, FileNotFoundError):
+            return None
         raise
     return claim
 
@@ -121,21 +121,34 @@ def take_back(layout: Layout, owner: str, folder: Path) -> Claim | None:
         patiently(lambda: folder.replace(mine))
     except FileNotFoundError:
         return None
-    return opened(mine)
-
-
-def opened(folder: Path) -> Claim | None:
-    """The claim in a folder; None, and the folder removed, when it holds no file and no decision."""
-    files = [p for p in (folder / "file").glob("*") if not p.name.startswith(".")]
-    claim = _read(folder) or (
-        Claim(folder=folder, ticket=secrets.token_hex(8), place="", name=files[0].name, taken=time.time())
-        if files
-        else None
-    )
-    if claim is None or not (files or claim.done.exists()):
-        remove_tree(folder)
+    claim = _opened(mine)
+    if claim is not None and _was_given_back(layout, claim):
+        remove(claim.file)
+        drop(claim)
         return None
     return claim
+
+
+def _opened(folder: Path) -> Claim | None:
+    """The claim in a folder; None, and the folder removed, when it holds no file and no decision."""
+    files = [p for p in (folder / "file").glob("*") if not p.name.startswith(".")]
+    claim = _read(folder) or Claim(
+        folder=folder,
+        ticket=secrets.token_hex(8),
+        place="",
+        name=files[0].name if files else folder.name,
+        taken=time.time(),
+    )
+    if not files and not is_there(claim.done):
+        drop(claim)
+        return None
+    return claim
+
+
+def _was_given_back(layout: Layout, claim: Claim) -> bool:
+    """Whether the file stands in in/ already: the kill came between its two names there and here."""
+    returned = layout.inbox / claim.place / claim.name
+    return is_there(returned) and is_there(claim.file) and returned.samefile(claim.file)
 
 
 def seen(folder: Path) -> Claim | None:
@@ -160,13 +173,22 @@ def release(layout: Layout, claim: Claim) -> None:
 
 
 def drop(claim: Claim) -> None:
-    """Remove a claim that holds nothing any more; the decision goes last, so that a half removed claim is known."""
-    for path in claim.folder.iterdir():
-        if path.is_dir():
-            remove_tree(path)
-        elif path != claim.done:
+    """Remove a claim, but never the file it is about: while that is in it, the claim stays.
+
+    The decision goes last, so that a half removed claim is known for what it is.
+    """
+    for path in (claim.folder / "file").glob("*"):
+        if path != claim.file:
             remove(path)
-    remove_tree(claim.folder)
+    with contextlib.suppress(FileNotFoundError):
+        (claim.folder / "file").rmdir()
+    for path in claim.folder.glob("answer-*"):
+        remove_tree(path)
+    for path in [p for p in claim.folder.glob("*") if p != claim.done and not p.is_dir()]:
+        remove(path)
+    remove(claim.done)
+    with contextlib.suppress(FileNotFoundError):
+        claim.folder.rmdir()
 
 
 def _new_folder(layout: Layout, owner: str) -> Path:

@@ -16,7 +16,7 @@ from sheetqc.folder.claims import Claim
 from sheetqc.folder.journal import Entry, Journal
 from sheetqc.folder.layout import Layout
 from sheetqc.folder.log import Log
-from sheetqc.folder.moves import sha256, write_whole
+from sheetqc.folder.moves import is_there, sha256, write_whole
 from sheetqc.folder.publish import Decision, Done
 from sheetqc.folder.reports import repeated_answer, returned_report
 from sheetqc.folder.workers import Workers
@@ -120,7 +120,7 @@ class Desk:
         case.done = publish.decision_of(self._layout, claim)
         if case.done is not None:
             self._close(case)
-        elif not claim.file.exists():
+        elif not is_there(claim.file):
             claims.drop(claim)  # all was in place; only the decision could not be read any more
         else:
             self._identify(case)
@@ -315,13 +315,15 @@ class Desk:
                 case.done = publish.decided(self._layout, case.claim, case.decision)
             _touch(self._layout.due)
             publish.carry_out(self._layout, case.claim, case.done)
+            self._record(case.claim, case.done)
+            publish.closed(self._layout, case.claim, case.done)
         except OSError as error:
             self._lost_or_later(case, error, self._closing.append)
             return
-        self._note(case, case.done)
+        self._count(case.claim, case.done)
+        self._gone(case)
 
-    def _note(self, case: Case, done: Done) -> None:
-        claim = case.claim
+    def _record(self, claim: Claim, done: Done) -> None:
         books = done.targets(".answered.xlsx", ".answered.xlsm")
         if done.answered and books:
             self._journal.record(
@@ -334,14 +336,14 @@ class Desk:
                     finished=time.time(),
                 )
             )
-        publish.closed(self._layout, claim)
+
+    def _count(self, claim: Claim, done: Done) -> None:
         if done.answered:
             self.tally.answered += 1
         else:
             self.tally.returned += 1
         renamed = "" if done.stem == Path(claim.name).stem else f", as {done.stem}"
         self._log.say(f"{claim.shown}: {'answered' if done.answered else 'returned'}{renamed}. {done.text}".rstrip())
-        self._gone(case)
 
     def _gone(self, case: Case) -> None:
         """Let the files of the same content go on."""

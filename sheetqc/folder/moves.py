@@ -93,6 +93,20 @@ def remove(path: Path) -> None:
         path.unlink(missing_ok=True)
 
 
+def is_there(path: Path) -> bool:
+    """Whether a file exists; unlike `Path.exists` never False only because it could not be found out.
+
+    Raises
+    ------
+    OSError : when it cannot be told
+    """
+    try:
+        path.lstat()
+    except FileNotFoundError:
+        return False
+    return True
+
+
 def remove_tree(folder: Path) -> None:
     """Remove a folder with all it holds, as far as that can be done now."""
     shutil.rmtree(folder, ignore_errors=True)

@@ -12,15 +12,16 @@ others: it is reserved by a file that only one can create, until the results the
 from __future__ import annotations
 
 import contextlib
+import errno
 import hashlib
 import json
 from dataclasses import dataclass
 from pathlib import Path
 
-from sheetqc.folder.claims import Claim, drop, opened
+from sheetqc.folder.claims import Claim, drop, seen
 from sheetqc.folder.layout import Layout
-from sheetqc.folder.moves import flush, move, write_whole
-from sheetqc.folder.names import numbered, split, workable
+from sheetqc.folder.moves import flush, is_there, move, write_whole
+from sheetqc.folder.names import numbered, split
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -100,16 +101,23 @@ def carry_out(layout: Layout, claim: Claim, done: Done) -> None:
     OSError : when something cannot be moved now
     """
     for source, target in done.moves:
-        if (claim.folder / source).exists():
+        if is_there(claim.folder / source):
             move(claim.folder / source, layout.root / target)
 
 
-def closed(layout: Layout, claim: Claim) -> None:
-    """Drop a claim that was carried out, and free its reservation."""
-    name = workable(claim.name)
-    done = decision_of(layout, claim)
+def closed(layout: Layout, claim: Claim, done: Done) -> None:
+    """Drop a claim that was carried out, and free its reservation.
+
+    Raises
+    ------
+    OSError : when it was not carried out after all (a share that was gone for a moment hides files), or cannot be
+        removed now
+    """
+    left = [source for source, _ in done.moves if is_there(claim.folder / source)]
+    if left:
+        raise OSError(errno.EBUSY, "not in its place yet", left[0])
     drop(claim)
-    _free(_reservation(layout, claim.place, done.stem if done else split(name)[0]), claim)
+    _free(_reservation(layout, claim.place, done.stem), claim)
 
 
 def _reserved(layout: Layout, claim: Claim, stem: str) -> str:
@@ -174,7 +182,10 @@ def _is_inside(base: Path, relative: str) -> bool:
 
 def forget_reservations(layout: Layout) -> None:
     """Remove reservations that no claim stands behind; only for a service that is alone on the folder."""
-    tickets = {c.ticket for c in map(opened, layout.working.iterdir()) if c is not None}
+    claims = [seen(folder) for folder in layout.working.iterdir()]
+    if None in claims:
+        return
+    tickets = {claim.ticket for claim in claims if claim is not None}
     for path in layout.names.iterdir():
         with contextlib.suppress(OSError):
             if path.read_text("ascii") not in tickets:

@@ -8,6 +8,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from pathlib import Path
 
+from sheetqc.errors import UsageError
 from sheetqc.folder import claims
 from sheetqc.folder.layout import Layout
 from sheetqc.folder.names import printable
@@ -54,8 +55,7 @@ class FolderStatus:
     summary_due: bool
     recent: tuple[tuple[float, str, str], ...] = ()
 
-    @property
-    def text(self) -> str:
+    def __str__(self) -> str:
         """The status as lines for people."""
         return "\n".join(_lines(self))
 
@@ -65,11 +65,11 @@ def status(folder: Path) -> FolderStatus:
 
     Raises
     ------
-    FileNotFoundError : when the folder is not there, or was never served
+    UsageError : when the folder is not there, or was never served
     """
     layout = Layout(folder.resolve())
     if not layout.reachable():
-        raise FileNotFoundError(f"{folder} is not a served folder: it has no folder in/")
+        raise UsageError(f"{folder} is not a served folder: it has no folder in/")
     dropped = [(printable(d.path.relative_to(layout.inbox).as_posix()), d.aside) for d in dropped_files(layout.inbox)]
     results = sorted(_results(layout), reverse=True)
     return FolderStatus(
@@ -130,9 +130,8 @@ def _lines(status: FolderStatus) -> Iterator[str]:
     yield "served by " + (", ".join(f"{s.host} (process {s.pid})" for s in alive) if alive else "nobody at present")
     if unsure:
         yield "no sign of life from " + ", ".join(f"{s.host} (process {s.pid})" for s in unsure)
-    yield f"waiting {len(status.waiting)}, in work {len(status.in_work)}, " + (
-        f"answered {status.answered}, returned {status.returned}"
-    )
+    counts = (len(status.waiting), len(status.in_work), status.answered, status.returned)
+    yield "waiting {}, in work {}, answered {}, returned {}".format(*counts)
     yield from _listed("waiting", status.waiting)
     yield from _listed("in work", [_work_line(w) for w in status.in_work])
     yield from _listed("left alone", [f"{name} {why}" for name, why in status.aside])
