@@ -1,0 +1,179 @@
+"""The sheets of rows: one row a characteristic, and one row a file set aside."""
+
+from __future__ import annotations
+
+import os
+import time
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from pathlib import Path
+from typing import Any, Literal
+
+from sheetqc.register.look import ACCENT, ACCENT_LIGHT, HAIRLINE, MUTED, SIGNS, Formats, signed
+from sheetqc.register.rows import Aside, Judged
+from sheetqc.register.urgency import chance_wrong
+
+CHARACTERISTICS, ASIDE = "Characteristics", "Returned"
+"""Names of the sheets."""
+
+TABLE = "Judged"
+"""Name of the table of characteristics."""
+
+_MOST_LINKS = 60_000
+_LONGEST = 32_000
+_HEAD = 3
+
+
+@dataclass(frozen=True, slots=True)
+class Column:
+    """A column of a list: heading, width in characters, how a value is written, and the value of a row."""
+
+    heading: str
+    width: float
+    kind: Literal["text", "wrapped", "number", "count", "share", "ppm", "verdict", "link", "time"]
+    value: Callable[[Any], Any]
+
+
+JUDGED_COLUMNS = (
+    Column("Verdict", 13, "verdict", lambda r: r.state),
+    Column("Supplier", 22, "text", lambda r: r.workbook.supplier),
+    Column("Part", 14, "text", lambda r: r.workbook.part_number),
+    Column("Lot", 12, "text", lambda r: r.workbook.lot),
+    Column("Date", 11, "text", lambda r: r.workbook.date),
+    Column("Id", 10, "text", lambda r: r.id),
+    Column("Characteristic", 24, "text", lambda r: r.name),
+    Column("Class", 10, "text", lambda r: r.critical_class),
+    Column("Values", 8, "count", lambda r: r.count),
+    Column("Index", 7, "text", lambda r: r.index),
+    Column("Required", 10, "number", lambda r: r.requirement),
+    Column("Estimate", 10, "number", lambda r: r.estimate),
+    Column("Lower bound", 10, "number", lambda r: r.lower),
+    Column("Claimed", 9, "number", lambda r: r.claimed),
+    Column("Claim doubtful", 10, "share", chance_wrong),
+    Column("Expected ppm", 11, "ppm", lambda r: r.expected_ppm),
+    Column("Main reason", 58, "wrapped", lambda r: r.reason),
+    Column("Next step", 40, "wrapped", lambda r: r.next_step),
+    Column("Answer", 24, "link", lambda r: r.workbook.copy or r.workbook.report),
+)
+
+ASIDE_COLUMNS = (
+    Column("What", 12, "text", lambda r: r.state),
+    Column("File as sent", 32, "text", lambda r: r.name),
+    Column("Since", 16, "time", lambda r: r.changed),
+    Column("Reason", 80, "wrapped", lambda r: r.reason),
+    Column("File", 34, "link", lambda r: r.file or r.report),
+)
+
+
+def add_judged(book: Any, formats: Formats, rows: Sequence[Judged], base: Path) -> None:
+    """Add the sheet of characteristics; `base` is the folder of the register, to which links are relative."""
+    title = "Every characteristic that was judged, those first that need a person most"
+    _add(book, formats, CHARACTERISTICS, TABLE, title, JUDGED_COLUMNS, rows, base)
+
+
+def add_aside(book: Any, formats: Formats, rows: Sequence[Aside], base: Path) -> None:
+    """Add the sheet of files without rows of their own."""
+    title = "Files returned unanswered, answers that cannot be read, and files that came more than once"
+    _add(book, formats, ASIDE, "SetAside", title, ASIDE_COLUMNS, rows, base)
+
+
+def _add(
+    book: Any,
+    formats: Formats,
+    name: str,
+    table: str,
+    title: str,
+    columns: Sequence[Column],
+    rows: Sequence[Judged] | Sequence[Aside],
+    base: Path,
+) -> None:
+    sheet = book.add_worksheet(name)
+    _set_up(sheet, formats, columns, title, len(rows))
+    sheet.add_table(
+        _HEAD - 1,
+        0,
+        _HEAD + max(len(rows), 1) - 1,
+        len(columns) - 1,
+        {
+            "name": table,
+            "style": None,
+            "columns": [{"header": c.heading, "header_format": _heading(formats)} for c in columns],
+        },
+    )
+    for number, row in enumerate(rows):
+        for column, spec in enumerate(columns):
+            write_value(sheet, formats, (_HEAD + number, column), spec, row, base, linked=number < _MOST_LINKS)
+    if not rows:
+        sheet.write_string(_HEAD, 0, "none", formats(font_color=MUTED, italic=True))
+
+
+def _heading(formats: Formats) -> Any:
+    return formats(bold=True, font_color=ACCENT, bg_color=ACCENT_LIGHT, bottom=1, bottom_color=ACCENT, text_wrap=True)
+
+
+def _set_up(sheet: Any, formats: Formats, columns: Sequence[Column], title: str, count: int) -> None:
+    sheet.hide_gridlines(2)
+    sheet.set_default_row(18)
+    sheet.set_row(0, 26)
+    sheet.write_string(0, 0, title, formats(bold=True, font_size=14))
+    sheet.set_row(_HEAD - 1, 30)
+    sheet.freeze_panes(_HEAD, 1)
+    for number, column in enumerate(columns):
+        sheet.set_column(number, number, column.width)
+    sheet.set_landscape()
+    sheet.set_paper(9)
+    sheet.fit_to_pages(1, 0)
+    sheet.repeat_rows(_HEAD - 1)
+    sheet.set_margins(0.4, 0.4, 0.5, 0.6)
+    sheet.set_footer("&L&8&A&R&8&P / &N")
+    sheet.print_area(0, 0, _HEAD + max(count, 1) - 1, len(columns) - 1)
+
+
+_NUMBER_FORMATS = {"number": "0.00", "count": "0", "share": "0 %", "ppm": "[<10]0.0;#,##0"}
+
+
+def write_value(
+    sheet: Any, formats: Formats, at: tuple[int, int], column: Column, row: Any, base: Path, *, linked: bool = True
+) -> None:
+    """Write one cell of a list. Texts are written as texts whatever they look like."""
+    value, rule = column.value(row), {"bottom": 4, "bottom_color": HAIRLINE}
+    if column.kind == "link":
+        _write_link(sheet, formats, at, value, base, linked=linked)
+    elif column.kind == "verdict":
+        sheet.write_string(*at, signed(value), formats(bold=True, font_color=SIGNS[value][1], **rule))
+    elif column.kind == "time":
+        text = time.strftime("%Y-%m-%d %H:%M", time.localtime(value)) if value else ""
+        sheet.write_string(*at, text, formats(**rule))
+    elif column.kind in ("text", "wrapped"):
+        sheet.write_string(*at, safe_text(value), formats(text_wrap=column.kind == "wrapped", **rule))
+    elif value is None:
+        sheet.write_blank(*at, None, formats(**rule))
+    else:
+        sheet.write_number(*at, value, formats(num_format=_NUMBER_FORMATS[column.kind], **rule))
+
+
+def safe_text(text: str) -> str:
+    """Text that a cell can hold, whatever it came from."""
+    return text.encode("utf-8", "backslashreplace").decode("utf-8")[:_LONGEST]
+
+
+def _write_link(sheet: Any, formats: Formats, at: tuple[int, int], target: Path, base: Path, *, linked: bool) -> None:
+    rule = {"bottom": 4, "bottom_color": HAIRLINE}
+    shown, address = safe_text(target.name), link(target, base)
+    if (
+        linked
+        and len(address) < 2000
+        and sheet.write_url(*at, address, formats(font_color=ACCENT, underline=1, **rule), shown) == 0
+    ):
+        return
+    sheet.write_string(*at, shown, formats(**rule))
+
+
+def link(target: Path, base: Path) -> str:
+    """A link to a file, relative to the folder of the register where both are on one drive."""
+    try:
+        path = Path(os.path.relpath(target, base)).as_posix()
+    except ValueError:
+        path = target.as_posix()
+    # in a link '#' begins a place within the file and '%' an escaped character
+    return "external:" + safe_text(path).replace("%", "%25").replace("#", "%23")
