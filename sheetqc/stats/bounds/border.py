@@ -1,0 +1,106 @@
+"""Points on the border of a likelihood region, all directions at once and without an optimiser."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+
+import numpy as np
+from numpy.typing import NDArray
+
+Array = NDArray[np.float64]
+LogLikelihood = Callable[[Array], Array]
+"""Log-likelihoods (m,) of parameter values (m, k) in unconstrained coordinates; -inf where impossible."""
+
+ROUNDS = 8
+
+
+def border(log_likelihood: LogLikelihood, centre: Array, drops: Array) -> Array:
+    """Points where the log-likelihood has fallen by each of `drops` from its value at the centre.
+
+    Directions are spread evenly in the axes of the observed information; along each the radius is found by secant
+    steps on the root of the fall, which is nearly straight, kept inside a bracket.
+
+    Parameters
+    ----------
+    log_likelihood : of parameter values (m, k)
+    centre : shape (k,), the maximum-likelihood point
+    drops : shape (r,), each above 0
+
+    Returns
+    -------
+    shape (r, directions, k)
+    """
+    centre = np.asarray(centre, dtype=float)
+    top = float(log_likelihood(centre[None])[0])
+    steps = directions(len(centre)) @ axes(log_likelihood, centre, top).T
+    wanted = np.repeat(np.asarray(drops, dtype=float), len(steps))
+    rays = np.tile(steps, (len(drops), 1))
+    radius = _radii(lambda t: top - log_likelihood(centre + t[:, None] * rays), wanted)
+    return (centre + radius[:, None] * rays).reshape(len(drops), len(steps), len(centre))
+
+
+def directions(k: int) -> Array:
+    """Unit vectors spread evenly over the sphere of k dimensions, opposite ones in pairs."""
+    if k == 1:
+        return np.array([[1.0], [-1.0]])
+    if k == 2:
+        angle = np.arange(24) * np.pi / 12
+        return np.stack([np.cos(angle), np.sin(angle)], axis=1)
+    grid = np.stack(np.meshgrid(*[[-1.0, 0.0, 1.0]] * k, indexing="ij"), axis=-1).reshape(-1, k)
+    grid = grid[np.any(grid != 0, axis=1)]
+    return np.asarray(grid / np.linalg.norm(grid, axis=1, keepdims=True))
+
+
+def axes(log_likelihood: LogLikelihood, centre: Array, top: float) -> Array:
+    """Columns along which a unit step costs about half a unit of log-likelihood: the root of the inverse information.
+
+    Where the likelihood is flat to second order (a maximum on a symmetry axis) the step is the longest usable one.
+    """
+    k = len(centre)
+    unit = _unit_steps(log_likelihood, centre, top)
+    plus = log_likelihood(centre + np.diag(unit))
+    minus = log_likelihood(centre - np.diag(unit))
+    matrix = np.diag(np.maximum(2 * top - plus - minus, 1e-3))
+    pairs = [(i, j) for i in range(k) for j in range(i)]
+    if pairs:
+        both = np.array([centre + unit * ((np.arange(k) == i) + 1.0 * (np.arange(k) == j)) for i, j in pairs])
+        apart = np.array([centre + unit * ((np.arange(k) == i) - 1.0 * (np.arange(k) == j)) for i, j in pairs])
+        cross = 0.5 * (log_likelihood(apart) - log_likelihood(both))
+        back = 0.5 * (log_likelihood(2 * centre - apart) - log_likelihood(2 * centre - both))
+        for (i, j), value in zip(pairs, 0.5 * (cross + back), strict=True):
+            matrix[i, j] = matrix[j, i] = value if np.isfinite(value) else 0.0
+    matrix = np.where(np.isfinite(matrix), matrix, np.diag(np.ones(k)))
+    size, turn = np.linalg.eigh(matrix)
+    return np.asarray(unit[:, None] * turn / np.sqrt(np.maximum(size, 0.02 * size.max())))
+
+
+def _unit_steps(log_likelihood: LogLikelihood, centre: Array, top: float) -> Array:
+    """Step in each coordinate that costs about half a unit."""
+    k = len(centre)
+    step = np.full(k, 0.1) * np.maximum(1.0, 0.1 * np.abs(centre))
+    for _ in range(8):
+        fall = top - np.minimum(log_likelihood(centre + np.diag(step)), log_likelihood(centre - np.diag(step)))
+        with np.errstate(all="ignore"):
+            factor = np.sqrt(0.5 / np.maximum(fall, 1e-12))
+        step = step * np.clip(np.where(np.isfinite(fall), factor, 0.2), 0.05, 8.0)
+    return step
+
+
+def _radii(fall: Callable[[Array], Array], wanted: Array) -> Array:
+    """Radius along each ray at which the fall reaches what is wanted."""
+    radius = np.sqrt(2 * wanted)
+    inside, outside = np.zeros_like(radius), np.full_like(radius, np.inf)
+    for _ in range(ROUNDS):
+        value = fall(radius)
+        value = np.where(np.isnan(value), np.inf, value)
+        near = value <= wanted
+        inside, outside = np.where(near, radius, inside), np.where(near, outside, radius)
+        with np.errstate(all="ignore"):
+            guess = radius * np.sqrt(wanted / np.maximum(value, 1e-12))
+        guess = np.clip(guess, 0.2 * radius, 3.0 * radius)
+        usable = (guess >= inside) & (guess <= outside) & np.isfinite(value)
+        middle = np.where(
+            np.isfinite(outside), 0.5 * (inside + np.where(np.isfinite(outside), outside, 0.0)), 2 * radius
+        )
+        radius = np.where(usable, guess, middle)
+    return np.asarray(np.minimum(radius, outside))
