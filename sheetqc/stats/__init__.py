@@ -1,0 +1,33 @@
+"""Statistics of measured values: numpy arrays in, numbers out. Knows no workbook and no record of a study.
+
+Each public name is found in its module when it is first used, so that importing the package costs nothing. A module
+must not bear the name of one of these functions: the module would hide the function.
+"""
+
+from __future__ import annotations
+
+from importlib import import_module
+from typing import Any
+
+_EXPORTS = {
+    # name: module
+    "DataError": "sheetqc.stats.errors",
+    "Fit": "sheetqc.stats.fitting",
+    "a_squared": "sheetqc.stats.goodness",
+    "anderson_darling": "sheetqc.stats.goodness",
+    "fit": "sheetqc.stats.fitting",
+}
+
+_PACKAGES = ("families",)
+
+
+def __getattr__(name: str) -> Any:
+    if name in _PACKAGES:
+        return import_module(f"sheetqc.stats.{name}")
+    if name not in _EXPORTS:
+        raise AttributeError(f"module 'sheetqc.stats' has no attribute {name!r}")
+    return getattr(import_module(_EXPORTS[name]), name)
+
+
+def __dir__() -> list[str]:
+    return sorted([*_EXPORTS, *_PACKAGES])
