@@ -7,6 +7,7 @@ import time
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from pathlib import Path
+from string import ascii_letters, digits
 from typing import Any, Literal
 
 from sheetqc.register.look import ACCENT, ACCENT_LIGHT, HAIRLINE, MUTED, SIGNS, Formats, signed
@@ -22,6 +23,8 @@ TABLE = "Judged"
 _MOST_LINKS = 60_000
 _LONGEST = 32_000
 _HEAD = 3
+_PLAIN = frozenset(ascii_letters + digits + "/-_.~()+,=@:")
+"""What stands for itself in a link; anything else could begin something other than a path."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,13 +39,13 @@ class Column:
 
 JUDGED_COLUMNS = (
     Column("Verdict", 13, "verdict", lambda r: r.state),
-    Column("Supplier", 22, "text", lambda r: r.workbook.supplier),
-    Column("Part", 14, "text", lambda r: r.workbook.part_number),
-    Column("Lot", 12, "text", lambda r: r.workbook.lot),
+    Column("Supplier", 20, "text", lambda r: r.workbook.supplier),
+    Column("Part", 13, "text", lambda r: r.workbook.part_number),
+    Column("Lot", 10, "text", lambda r: r.workbook.lot),
     Column("Date", 11, "text", lambda r: r.workbook.date),
-    Column("Id", 10, "text", lambda r: r.id),
-    Column("Characteristic", 24, "text", lambda r: r.name),
-    Column("Class", 10, "text", lambda r: r.critical_class),
+    Column("Id", 9, "text", lambda r: r.id),
+    Column("Characteristic", 22, "text", lambda r: r.name),
+    Column("Class", 11, "text", lambda r: r.critical_class),
     Column("Values", 8, "count", lambda r: r.count),
     Column("Index", 7, "text", lambda r: r.index),
     Column("Required", 10, "number", lambda r: r.requirement),
@@ -51,9 +54,9 @@ JUDGED_COLUMNS = (
     Column("Claimed", 9, "number", lambda r: r.claimed),
     Column("Claim doubtful", 10, "share", chance_wrong),
     Column("Expected ppm", 11, "ppm", lambda r: r.expected_ppm),
-    Column("Main reason", 58, "wrapped", lambda r: r.reason),
-    Column("Next step", 40, "wrapped", lambda r: r.next_step),
-    Column("Answer", 24, "link", lambda r: r.workbook.copy or r.workbook.report),
+    Column("Main reason", 50, "wrapped", lambda r: r.reason),
+    Column("Next step", 36, "wrapped", lambda r: r.next_step),
+    Column("Answer", 26, "link", lambda r: r.workbook.copy or r.workbook.report),
 )
 
 ASIDE_COLUMNS = (
@@ -97,18 +100,24 @@ def _add(
         {
             "name": table,
             "style": None,
-            "columns": [{"header": c.heading, "header_format": _heading(formats)} for c in columns],
+            "columns": [{"header": c.heading, "header_format": _heading(formats, c)} for c in columns],
         },
     )
     for number, row in enumerate(rows):
+        sheet.set_row(_HEAD + number, height(columns, row))
         for column, spec in enumerate(columns):
             write_value(sheet, formats, (_HEAD + number, column), spec, row, base, linked=number < _MOST_LINKS)
     if not rows:
         sheet.write_string(_HEAD, 0, "none", formats(font_color=MUTED, italic=True))
 
 
-def _heading(formats: Formats) -> Any:
-    return formats(bold=True, font_color=ACCENT, bg_color=ACCENT_LIGHT, bottom=1, bottom_color=ACCENT, text_wrap=True)
+def _heading(formats: Formats, column: Column) -> Any:
+    return formats(bold=True, font_color=ACCENT, bg_color=ACCENT_LIGHT, text_wrap=True, **side(column))
+
+
+def side(column: Column) -> dict[str, Any]:
+    """Alignment of a column: numbers to the right, everything else to the left and a little in."""
+    return {"align": "right"} if column.kind in _RIGHT else {"align": "left", "indent": 1}
 
 
 def _set_up(sheet: Any, formats: Formats, columns: Sequence[Column], title: str, count: int) -> None:
@@ -126,9 +135,21 @@ def _set_up(sheet: Any, formats: Formats, columns: Sequence[Column], title: str,
     sheet.repeat_rows(_HEAD - 1)
     sheet.set_margins(0.4, 0.4, 0.5, 0.6)
     sheet.set_footer("&L&8&A&R&8&P / &N")
-    sheet.print_area(0, 0, _HEAD + max(count, 1) - 1, len(columns) - 1)
+    sheet.print_area(0, 0, _HEAD + max(count, 1) - 1, _last_printed(columns))
 
 
+def _last_printed(columns: Sequence[Column]) -> int:
+    """The first column of long text is the last one on paper; what follows serves on the screen only."""
+    return next(number for number, c in enumerate(columns) if c.kind == "wrapped")
+
+
+def height(columns: Sequence[Column], row: Any) -> float:
+    """Height of a row in points, for its longest wrapped text."""
+    lines = max((-(-len(c.value(row)) // (c.width * 1.05)) for c in columns if c.kind == "wrapped"), default=1)
+    return 6 + 13 * max(1, min(lines, 12))
+
+
+_RIGHT = ("number", "count", "share", "ppm")
 _NUMBER_FORMATS = {"number": "0.00", "count": "0", "share": "0 %", "ppm": "[<10]0.0;#,##0"}
 
 
@@ -136,7 +157,7 @@ def write_value(
     sheet: Any, formats: Formats, at: tuple[int, int], column: Column, row: Any, base: Path, *, linked: bool = True
 ) -> None:
     """Write one cell of a list. Texts are written as texts whatever they look like."""
-    value, rule = column.value(row), {"bottom": 4, "bottom_color": HAIRLINE}
+    value, rule = column.value(row), {"bottom": 1, "bottom_color": HAIRLINE, **side(column)}
     if column.kind == "link":
         _write_link(sheet, formats, at, value, base, linked=linked)
     elif column.kind == "verdict":
@@ -158,7 +179,7 @@ def safe_text(text: str) -> str:
 
 
 def _write_link(sheet: Any, formats: Formats, at: tuple[int, int], target: Path, base: Path, *, linked: bool) -> None:
-    rule = {"bottom": 4, "bottom_color": HAIRLINE}
+    rule = {"bottom": 1, "bottom_color": HAIRLINE, "align": "left", "indent": 1}
     shown, address = safe_text(target.name), link(target, base)
     if (
         linked
@@ -175,5 +196,4 @@ def link(target: Path, base: Path) -> str:
         path = Path(os.path.relpath(target, base)).as_posix()
     except ValueError:
         path = target.as_posix()
-    # in a link '#' begins a place within the file and '%' an escaped character
-    return "external:" + safe_text(path).replace("%", "%25").replace("#", "%23")
+    return "external:" + "".join(c if c in _PLAIN or ord(c) > 127 else f"%{ord(c):02X}" for c in safe_text(path))

@@ -3,11 +3,11 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Sequence
+from collections.abc import Collection, Sequence
 from pathlib import Path
 from typing import Any
 
-from sheetqc.register.listing import TABLE, Column, safe_text, write_value
+from sheetqc.register.listing import TABLE, Column, height, safe_text, side, write_value
 from sheetqc.register.look import ACCENT, ACCENT_LIGHT, HAIRLINE, INK, MUTED, PAPER, SIGNS, Formats, signed
 from sheetqc.register.rows import STATES, Aside, Judged
 from sheetqc.register.urgency import chance_wrong
@@ -15,8 +15,8 @@ from sheetqc.register.urgency import chance_wrong
 OVERVIEW = "Overview"
 """Name of the sheet."""
 
-_MOST_FIRST, _MOST_SUPPLIERS, _MOST_REASONS = 12, 12, 10
-_WIDTHS = (2, 22, 13, 13, 13, 13, 13, 11, 11, 52, 22)
+_MOST_FIRST, _MOST_SUPPLIERS, _MOST_REASONS = 10, 12, 10
+_WIDTHS = (2, 22, 13, 13, 13, 14, 13, 13, 11, 52, 24)
 _NO_SUPPLIER = "(no supplier stated)"
 
 _FIRST_COLUMNS = (
@@ -28,7 +28,7 @@ _FIRST_COLUMNS = (
     Column("Required", 0, "number", lambda r: r.requirement),
     Column("Lower bound", 0, "number", lambda r: r.lower),
     Column("Claim doubtful", 0, "share", chance_wrong),
-    Column("Main reason", 0, "wrapped", lambda r: r.reason),
+    Column("Main reason", _WIDTHS[9], "wrapped", lambda r: r.reason),
     Column("Answer", 0, "link", lambda r: r.workbook.copy or r.workbook.report),
 )
 
@@ -91,24 +91,27 @@ class Overview:
         self._text(self._at, 1, text, bold=True, font_size=12, font_color=ACCENT, bottom=1, bottom_color=ACCENT)
         self._at += 1
 
-    def _heads(self, headings: Sequence[str], column: int = 1) -> None:
+    def _heads(self, headings: Sequence[str], right: Collection[str] = ()) -> None:
         self._sheet.set_row(self._at, 30)
         for number, text in enumerate(headings):
-            self._text(self._at, column + number, text, bold=True, bg_color=ACCENT_LIGHT, text_wrap=True)
+            place = {"align": "right"} if text in right else {"align": "left", "indent": 1}
+            self._text(
+                self._at, 1 + number, text, bold=True, font_color=ACCENT, bg_color=ACCENT_LIGHT, text_wrap=True, **place
+            )
         self._at += 1
 
     def _verdicts(self) -> None:
         self._heading("How do they stand?")
-        self._heads(("Verdict", "Count", "Share", "What it says"))
+        self._heads(("Verdict", "Count", "Share", "What it says", "", "", ""), ("Count", "Share"))
         counts, top = Counter(r.state for r in self._rows), self._at
         for state in STATES:
             count, row = counts[state], self._at
-            self._text(row, 1, signed(state), bold=True, font_color=SIGNS[state][1])
+            self._text(row, 1, signed(state), bold=True, indent=1, font_color=SIGNS[state][1])
             self._formula(row, 2, f"=COUNTIFS({TABLE}[Verdict],B{row + 1})", count, num_format="0")
             total = f"SUM($C${top + 1}:$C${top + len(STATES)})"
             share = count / len(self._rows) if self._rows else 0
             self._formula(row, 3, f"=IF({total}=0,0,C{row + 1}/{total})", share, num_format="0 %")
-            self._text(row, 4, SIGNS[state][2], font_color=MUTED)
+            self._text(row, 4, SIGNS[state][2], indent=1, font_color=MUTED)
             self._at += 1
         self._at += 1
 
@@ -122,10 +125,11 @@ class Overview:
             font_color=MUTED,
         )
         self._at += 1
-        self._heads([c.heading for c in _FIRST_COLUMNS])
+        right = [c.heading for c in _FIRST_COLUMNS if side(c)["align"] == "right"]
+        self._heads([c.heading for c in _FIRST_COLUMNS], right)
         urgent = [r for r in self._rows if r.state != "shown"][:_MOST_FIRST]
         for row in urgent:
-            self._sheet.set_row(self._at, 18 * max(1, -(-len(row.reason) // 52)))
+            self._sheet.set_row(self._at, height(_FIRST_COLUMNS, row))
             for number, column in enumerate(_FIRST_COLUMNS):
                 write_value(self._sheet, self._format, (self._at, 1 + number), column, row, self._base)
             self._at += 1
@@ -144,13 +148,14 @@ class Overview:
         if not counts:
             return
         order = sorted(counts, key=lambda k: (-(counts[k].total() - counts[k]["shown"]), -counts[k].total(), k))
+        self._sheet.set_h_pagebreaks([self._at])
         self._heading("Whose are they?")
         if len(order) > _MOST_SUPPLIERS:
             self._text(
                 self._at, 1, f"The {_MOST_SUPPLIERS} suppliers with most to look at, of {len(order)}.", font_color=MUTED
             )
             self._at += 1
-        self._heads(("Supplier", *map(signed, STATES)))
+        self._heads(("Supplier", *map(signed, STATES)), [signed(s) for s in STATES])
         top = self._at
         for key in order[:_MOST_SUPPLIERS]:
             self._supplier_row(spelled[key], counts[key])
@@ -158,11 +163,11 @@ class Overview:
 
     def _supplier_row(self, name: str, counts: Counter[str]) -> None:
         row = self._at
-        self._text(row, 1, name, bottom=4, bottom_color=HAIRLINE)
+        self._text(row, 1, name, indent=1, bottom=1, bottom_color=HAIRLINE)
         wanted = '""' if name == _NO_SUPPLIER else f"$B{row + 1}"
         for number, state in enumerate(STATES):
             formula = f'=SUMPRODUCT(({TABLE}[Supplier]={wanted})*({TABLE}[Verdict]="{signed(state)}"))'
-            self._formula(row, 2 + number, formula, counts[state], num_format="0;;", bottom=4, bottom_color=HAIRLINE)
+            self._formula(row, 2 + number, formula, counts[state], num_format="0;;", bottom=1, bottom_color=HAIRLINE)
         self._at += 1
 
     def _supplier_chart(self, top: int, bottom: int) -> None:
@@ -197,18 +202,19 @@ class Overview:
             font_color=MUTED,
         )
         self._at += 1
-        self._heads(("Finding", "Characteristics"))
+        self._heads(("Finding", "", "Count"), ("Count",))
         top = self._at
         for code, count in found[:_MOST_REASONS]:
-            self._text(self._at, 1, code.replace("-", " "), bottom=4, bottom_color=HAIRLINE)
-            self._sheet.write_number(self._at, 2, count, self._format(bottom=4, bottom_color=HAIRLINE))
+            self._text(self._at, 1, code.replace("-", " "), indent=1, bottom=1, bottom_color=HAIRLINE)
+            self._text(self._at, 2, "", bottom=1, bottom_color=HAIRLINE)
+            self._sheet.write_number(self._at, 3, count, self._format(bottom=1, bottom_color=HAIRLINE))
             self._at += 1
         chart = self._book.add_chart({"type": "bar"})
         chart.add_series(
             {
                 "name": "Characteristics",
                 "categories": [OVERVIEW, top, 1, self._at - 1, 1],
-                "values": [OVERVIEW, top, 2, self._at - 1, 2],
+                "values": [OVERVIEW, top, 3, self._at - 1, 3],
                 "fill": {"color": ACCENT},
                 "gap": 45,
                 "data_labels": {"value": True, "font": _font(9)},
@@ -216,7 +222,7 @@ class Overview:
         )
         _dress(chart, "Findings, most frequent first")
         chart.set_legend({"none": True})
-        height = max(190, 80 + 24 * (self._at - top))
+        height = max(190, 80 + 32 * (self._at - top))
         self._place(chart, top - 1, height, "Bars of how many characteristics have which kind of finding")
         self._at = max(self._at, top - 1 + -(-height // 24)) + 1
 
@@ -247,7 +253,16 @@ def _font(size: int) -> dict[str, Any]:
 
 def _dress(chart: Any, title: str) -> None:
     chart.set_title({"name": title, "name_font": {**_font(11), "bold": True}, "overlay": False})
-    chart.set_y_axis({"reverse": True, "num_font": _font(9), "line": {"color": HAIRLINE}, "major_tick_mark": "none"})
+    chart.set_y_axis(
+        {
+            "reverse": True,
+            "crossing": "max",
+            "interval_unit": 1,
+            "num_font": _font(9),
+            "line": {"color": HAIRLINE},
+            "major_tick_mark": "none",
+        }
+    )
     chart.set_x_axis(
         {
             "num_font": _font(9),

@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 from pathlib import Path
-from typing import Any
+from typing import Any, Literal
 
 STATES = ("shown", "likely", "doubtful", "not met", "no verdict")
 """Verdict states, from the best to the one that says nothing."""
@@ -69,7 +69,7 @@ class Aside:
     file: Path | None
     changed: float
     name: str
-    state: str
+    state: Literal["returned", "unreadable", "repeated"]
     reason: str
 
 

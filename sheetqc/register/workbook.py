@@ -13,6 +13,8 @@ from sheetqc.register.overview import Overview
 from sheetqc.register.rows import Aside, Judged, Row
 from sheetqc.register.urgency import by_urgency
 
+_ORDER = ("returned", "unreadable", "repeated")
+
 
 def write(rows: Sequence[Row], into: Path) -> None:
     """Write the register; what stood there before is replaced in one step.
@@ -27,7 +29,7 @@ def write(rows: Sequence[Row], into: Path) -> None:
     OSError : when it cannot be written, for example because it is open in a spreadsheet program
     """
     judged = by_urgency(row for row in rows if isinstance(row, Judged))
-    aside = [row for row in rows if isinstance(row, Aside)]
+    aside = sorted((row for row in rows if isinstance(row, Aside)), key=lambda row: _ORDER.index(row.state))
     into.parent.mkdir(parents=True, exist_ok=True)
     temporary = into.with_name(f".{secrets.token_hex(6)}.tmp")
     try:
