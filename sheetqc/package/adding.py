@@ -46,7 +46,7 @@ class Adding:
         removed = take_out_earlier_answer(self._book)
         recalculated = mentions_own_names(self._book, frozenset(removed.sheets))
         folder = self._free_folder(removed)
-        styles = self._add_styles(folder)
+        styles = self._add_styles()
         sheets = self._add_sheets(folder, styles)
         if recalculated:
             ensured(self._book.root, "calcPr", ORDER).set("fullCalcOnLoad", "1")
@@ -59,17 +59,20 @@ class Adding:
         )
 
     def _free_folder(self, removed: Removed) -> str:
-        package = self._book.package
-        taken = {m.name.key for m in package.archive.members} | package.types.named
-        taken |= {link.target.key for link in self._book.links if link.target}
-        taken -= removed.parts
+        taken = self._taken() - removed.parts
         base = f"{self._book.name.folder}/added".lstrip("/")
         number = 1
         while any(key.startswith(f"{_numbered(base, number)}/".lower()) for key in taken):
             number += 1
         return _numbered(base, number)
 
-    def _add_styles(self, folder: str) -> StyleMap:
+    def _taken(self) -> set[str]:
+        """Keys of parts that are there, or that something says or assumes are there."""
+        package = self._book.package
+        taken = {m.name.key for m in package.archive.members} | package.types.named
+        return taken | {link.target.key for link in self._book.links if link.target}
+
+    def _add_styles(self) -> StyleMap:
         book, extra = self._book, self._extra
         theirs = extra.part("styles")
         if theirs is None:
@@ -83,7 +86,7 @@ class Adding:
         if mine:
             self._styles = (mine, written)
         else:
-            self._link(PartName(f"{folder}/styles.xml"), "styles", written, STYLES)
+            self._link("styles.xml", "styles", written, STYLES)
         return found
 
     def _add_sheets(self, folder: str, styles: StyleMap) -> tuple[AddedSheet, ...]:
@@ -97,7 +100,7 @@ class Adding:
             sheet_names=new_names,
             table_names=self._table_names(),
             days=BETWEEN_DATE_SYSTEMS * (extra.date_1904 - book.date_1904),
-            cell_metadata=self._cell_metadata(folder),
+            cell_metadata=self._cell_metadata(),
         )
         moved = renaming(extra.name.folder, folder)
         transfer = Transfer(extra.package, moved, fitting, strict=book.strict, table_id=self._table_ids().__next__)
@@ -128,8 +131,11 @@ class Adding:
         free = max(taken, default=0) + 1
         return free if free <= HIGHEST_SHEET_ID else next(i for i in range(1, HIGHEST_SHEET_ID) if i not in taken)
 
-    def _link(self, name: PartName, kind: str, content: bytes, content_type: str) -> None:
-        """Adds a part that the workbook itself refers to."""
+    def _link(self, leaf: str, kind: str, content: bytes, content_type: str) -> None:
+        """Adds a part that the workbook itself refers to, beside it."""
+        name = PartName(f"{self._book.name.folder}/{leaf}".lstrip("/"))
+        while name.key in self._taken():
+            name = PartName(f"{name.text.removesuffix('.xml')}_.xml")
         self._new.append(NewPart(name=name, content=content, content_type=content_type))
         self._book.links.add(relationship(kind, strict=self._book.strict), name)
 
@@ -137,7 +143,7 @@ class Adding:
         part = self._extra.part(kind)
         return None if part is None else self._extra.package.root(part)
 
-    def _cell_metadata(self, folder: str) -> int | None:
+    def _cell_metadata(self) -> int | None:
         """Index in the copy of the metadata that formulas that spill refer to; None when they go without it."""
         theirs = self._extra.part("sheetMetadata")
         if theirs is None:
@@ -147,7 +153,7 @@ class Adding:
             return _spilling(self._book.package.root(mine))
         content = self._extra.package.content(theirs)
         content = strict_namespaces(content) if self._book.strict else content
-        self._link(PartName(f"{folder}/metadata.xml"), "sheetMetadata", content, METADATA)
+        self._link("metadata.xml", "sheetMetadata", content, METADATA)
         return 1
 
     def _table_roots(self, book: Workbook) -> list[Element]:

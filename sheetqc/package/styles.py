@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import copy
+from collections.abc import Hashable
 from dataclasses import dataclass
 
 from lxml import etree
@@ -58,7 +59,7 @@ class Styles:
     def __init__(self, root: Element) -> None:
         self.root = root
         self._main = namespace(root)
-        self._known: dict[str, dict[bytes, int]] = {}
+        self._known: dict[str, dict[Hashable, int]] = {}
         self._counts: dict[str, int] = {}
 
     def add(self, other: Element, theme: Element | None) -> StyleMap:
@@ -202,8 +203,10 @@ def _entries(found: Element) -> list[Element]:
     return [e for e in found if isinstance(e.tag, str)]
 
 
-def _likeness(element: Element) -> bytes:
-    return etree.tostring(element, method="c14n2", strip_text=True, with_tail=False)  # type: ignore[call-overload,no-any-return]
+def _likeness(element: Element) -> Hashable:
+    """What two entries that mean the same have in common."""
+    attributes = tuple(sorted((str(k), str(v)) for k, v in element.attrib.items()))
+    return element.tag, attributes, (element.text or "").strip(), tuple(_likeness(e) for e in _entries(element))
 
 
 def _declared(root: Element) -> dict[int, str]:
