@@ -56,6 +56,7 @@ class Adding:
             added=tuple(self._new),
             sheets=sheets,
             removed_sheets=removed.sheets,
+            removed_links=removed.links,
         )
 
     def _free_folder(self, removed: Removed) -> str:

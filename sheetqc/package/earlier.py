@@ -14,9 +14,10 @@ from sheetqc.package.xml import Element, child, children, parsed, whole
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Removed:
-    """What was taken out: names of sheets, and keys of the parts that nothing else refers to."""
+    """What was taken out: names of sheets, ids of relationships, and keys of the parts that nothing else refers to."""
 
     sheets: tuple[str, ...] = ()
+    links: frozenset[str] = frozenset()
     parts: frozenset[str] = frozenset()
 
 
@@ -27,11 +28,12 @@ def take_out_earlier_answer(book: Workbook) -> Removed:
         return Removed()
     gone = tuple(sheet for sheet in book.sheets if sheet.name in names)
     calculation = _outdated_calculation_chain(book, gone)
-    ids = {sheet.relation for sheet in gone} | ({calculation} if calculation else set())
+    ids = {sheet.relation for sheet in gone} - {sheet.relation for sheet in book.sheets if sheet.name not in names}
+    ids |= {calculation} if calculation else set()
     parts = _only_reached_by(book, ids)
     _take_out_sheets(book, frozenset(names))
     book.links.forget(ids)
-    return Removed(sheets=names, parts=parts)
+    return Removed(sheets=names, links=frozenset(ids), parts=parts)
 
 
 def _only_reached_by(book: Workbook, ids: set[str]) -> frozenset[str]:

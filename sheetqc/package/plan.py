@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from typing import BinaryIO
 
 from sheetqc.package.additions import NewPart
@@ -27,7 +27,8 @@ class Plan:
     left_out: frozenset[str]  # keys of parts of the original
     added: tuple[NewPart, ...]
     sheets: tuple[AddedSheet, ...]
-    removed_sheets: tuple[str, ...] = field(default=())  # names of sheets of an earlier answer
+    removed_sheets: tuple[str, ...] = ()  # names of sheets of an earlier answer
+    removed_links: frozenset[str] = frozenset()  # ids of the relationships of the workbook that led to them
 
 
 def write(archive: Archive, plan: Plan, file: BinaryIO) -> None:

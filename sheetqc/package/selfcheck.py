@@ -6,8 +6,6 @@ from collections.abc import Callable
 from dataclasses import replace
 from itertools import zip_longest
 
-from lxml import etree
-
 from sheetqc.errors import CannotGraft
 from sheetqc.package.archive import Archive
 from sheetqc.package.contenttypes import LIST
@@ -34,6 +32,7 @@ def refuse_unfaithful(original: Archive, copy: Archive, plan: Plan) -> None:
     _same_members(original, copy, plan)
     before, after = Workbook(Package(original)), Workbook(Package(copy))
     _only_added_to(before, after, plan)
+    _old_sheets_where_they_were(before, after, plan)
     _new_sheets_reachable(after, plan)
 
 
@@ -71,9 +70,8 @@ def _only_added_to(before: Workbook, after: Workbook, plan: Plan) -> None:
     _same_entries(
         before.package, after.package, LIST, lambda e: PartName(e.get("PartName", "")).key not in plan.left_out
     )
-    kept = {link.id for link in before.links if link.target is None or link.target.key not in plan.left_out}
     lists = before.name.relationships
-    _same_entries(before.package, after.package, lists, lambda e: e.get("Id", "") in kept)
+    _same_entries(before.package, after.package, lists, lambda e: e.get("Id", "") not in plan.removed_links)
     for key in plan.replaced:
         if key not in old_parts:
             raise _fail(f"{key} is not a part of the original")
@@ -158,12 +156,14 @@ def _styles_only_longer(before: Element, after: Element) -> None:
                 each.tail = None
                 if not (each.text or "").strip():
                     each.text = None
-        if _text(old) != _text(new):
+        if canonical(old) != canonical(new):
             raise _fail(f"the {name} of the styles have changed")
 
 
-def _text(element: Element) -> bytes:
-    return etree.tostring(element, method="c14n", with_tail=False)
+def _old_sheets_where_they_were(before: Workbook, after: Workbook, plan: Plan) -> None:
+    old = [(s.name, s.id, s.state, s.part) for s in before.sheets if s.name not in plan.removed_sheets]
+    if old != [(s.name, s.id, s.state, s.part) for s in after.sheets][: len(old)]:
+        raise _fail("its own sheets are not where they were")
 
 
 def _new_sheets_reachable(after: Workbook, plan: Plan) -> None:

@@ -9,10 +9,10 @@ from dataclasses import dataclass
 from lxml import etree
 
 from sheetqc.package.colours import make_plain, theme_colours
-from sheetqc.package.dialect import MAIN
+from sheetqc.package.dialect import MAIN, STRICT_MAIN
 from sheetqc.package.numberformats import BUILT_IN, FIRST_FREE, shows_date
-from sheetqc.package.refusals import cannot_graft
-from sheetqc.package.xml import Element, child, children, ensured, local, namespace, whole
+from sheetqc.package.refusals import cannot_graft, damaged
+from sheetqc.package.xml import Element, child, children, elements, ensured, likeness, local, namespace, whole
 
 ORDER = (
     "numFmts",
@@ -57,6 +57,8 @@ class Styles:
     """The style sheet of a workbook, changed only by appending."""
 
     def __init__(self, root: Element) -> None:
+        if local(root) != "styleSheet" or namespace(root) not in (MAIN, STRICT_MAIN):
+            raise damaged("the styles part is something else")
         self.root = root
         self._main = namespace(root)
         self._known: dict[str, dict[Hashable, int]] = {}
@@ -94,7 +96,7 @@ class Styles:
     def _list(self, name: str) -> Element:
         """The list of that name; the entries that every program takes for granted are made where they are missing."""
         found = ensured(self.root, name, ORDER)
-        for text in _DEFAULTS.get(name, ())[len(_entries(found)) :]:
+        for text in _DEFAULTS.get(name, ())[len(elements(found)) :]:
             found.append(etree.fromstring(text.format(self._main)))
         return found
 
@@ -105,18 +107,18 @@ class Styles:
         """Index of an entry of a list, appended when no equal one is there."""
         found = self._list(name)
         if name not in self._known:
-            entries = _entries(found)
+            entries = elements(found)
             self._counts[name] = len(entries)
             start = max(0, len(entries) - NEAR)
-            self._known[name] = {_likeness(e): start + i for i, e in enumerate(entries[start:])}
+            self._known[name] = {likeness(e): start + i for i, e in enumerate(entries[start:])}
         known = self._known[name]
-        likeness = _likeness(element)
-        if likeness not in known:
+        like = likeness(element)
+        if like not in known:
             found.append(element)
-            known[likeness] = self._counts[name]
+            known[like] = self._counts[name]
             self._counts[name] += 1
             found.set("count", str(self._counts[name]))
-        return known[likeness]
+        return known[like]
 
     def _format(self, old: Element, number: int, maps: dict[str, tuple[int, ...]], styles: dict[int, int]) -> int:
         made = etree.Element(f"{{{self._main}}}xf")
@@ -163,7 +165,7 @@ class Styles:
                 entry.set("formatCode", code)
                 ids[code] = free
                 free += 1
-                self._list("numFmts").set("count", str(len(_entries(self._list("numFmts")))))
+                self._list("numFmts").set("count", str(len(elements(self._list("numFmts")))))
             found[number] = ids[code]
         return found
 
@@ -197,16 +199,6 @@ def _moved(element: Element, main: str) -> Element:
     for part in element:
         made.append(_moved(part, main))
     return made
-
-
-def _entries(found: Element) -> list[Element]:
-    return [e for e in found if isinstance(e.tag, str)]
-
-
-def _likeness(element: Element) -> Hashable:
-    """What two entries that mean the same have in common."""
-    attributes = tuple(sorted((str(k), str(v)) for k, v in element.attrib.items()))
-    return element.tag, attributes, (element.text or "").strip(), tuple(_likeness(e) for e in _entries(element))
 
 
 def _declared(root: Element) -> dict[int, str]:

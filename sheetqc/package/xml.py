@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import codecs
-from collections.abc import Sequence
+from collections.abc import Hashable, Sequence
 
 from lxml import etree
 
@@ -57,9 +57,24 @@ def document(root: Element) -> etree.DocInfo:
     return info
 
 
-def canonical(root: Element) -> bytes:
+def canonical(element: Element) -> bytes:
     """What of a document matters: attribute order, quotes and declarations do not."""
-    return etree.tostring(root, method="c14n")
+    try:
+        return etree.tostring(element, method="c14n", with_tail=False)
+    except etree.C14NError:
+        # The canonical form knows no relative namespaces; a comparison has to do without it then.
+        return repr(likeness(element)).encode("utf-8", "surrogatepass")
+
+
+def likeness(element: Element) -> Hashable:
+    """What two elements that mean the same have in common."""
+    attributes = tuple(sorted((str(k), str(v)) for k, v in element.attrib.items()))
+    return element.tag, attributes, (element.text or "").strip(), tuple(likeness(e) for e in elements(element))
+
+
+def elements(parent: Element) -> list[Element]:
+    """The children that are elements, not comments or instructions."""
+    return [e for e in parent if isinstance(e.tag, str)]
 
 
 def namespace(element: Element) -> str:
