@@ -36,6 +36,7 @@ class Relationships:
     def __init__(self, source: PartName, content: bytes = EMPTY) -> None:
         self._source = source
         self._content = content
+        self._reserved: set[str] = set()
         self._root = parsed(content, source.relationships.text)
         if etree.QName(self._root).localname != "Relationships":
             raise damaged(f"{source.relationships.text} is not a list of relationships")
@@ -59,9 +60,13 @@ class Relationships:
         """The relationship of that id."""
         return next((r for r in self if r.id == id_), None)
 
+    def reserve(self, ids: Iterable[str]) -> None:
+        """Keeps ids from being given out: those that the part uses although they lead nowhere."""
+        self._reserved |= {id_.lower() for id_ in ids}
+
     def add(self, type_: str, target: PartName) -> str:
         """Adds a relationship to a part and gives its new id."""
-        taken = {r.id.lower() for r in self}
+        taken = {r.id.lower() for r in self} | self._reserved
         number = len(taken) + 1
         while f"rid{number}" in taken:
             number += 1

@@ -56,6 +56,9 @@ class Workbook:
         if package.relationships_content(self.name) is None:
             raise damaged("the workbook part refers to no sheets")
         self.links = package.relationships(self.name)
+        self.links.reserve(_used_ids(self.root))
+        if all(sheet.part is None for sheet in self.sheets):
+            raise damaged("the workbook part refers to no sheets")
 
     @property
     def main(self) -> str:
@@ -105,6 +108,12 @@ class Workbook:
         """The part that the workbook refers to by a kind such as "styles", as the archive spells it."""
         link = self.links.by_kind(kind)
         return self.package.stored(link.target) if link and link.target else None
+
+
+def _used_ids(root: Element) -> list[str]:
+    """Values of all attributes that refer to relationships, in either dialect."""
+    spaces = (f"{{{RELATION}}}", f"{{{STRICT_RELATION}}}")
+    return [str(v) for e in root.iter() for k, v in e.attrib.items() if str(k).startswith(spaces)]
 
 
 def main_part(package: Package) -> PartName:
