@@ -43,10 +43,11 @@ class Reply:
 
 
 def tried(answer: Answerer, source: Path, into: Path, seconds: float) -> Reply:
-    """The reply to one try, whatever happens in it; the process ends itself when `seconds` have passed."""
+    """The reply to one try, whatever happens in it; the process ends itself when `seconds` (0: never) have passed."""
     alarm = threading.Timer(seconds, _end_for_time, (into,))
     alarm.daemon = True
-    alarm.start()
+    if seconds > 0:
+        alarm.start()
     try:
         return _replied(answer(source, into), source, into)
     except WorkbookError as error:

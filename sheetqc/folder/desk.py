@@ -72,6 +72,8 @@ class Tally:
     answered: int = 0
     returned: int = 0
     left: list[str] = field(default_factory=list)
+    given_up: set[Path] = field(default_factory=set)
+    """Files given back to in/ that this service must not take again."""
 
 
 class Desk:
@@ -122,6 +124,7 @@ class Desk:
             self._close(case)
         elif not is_there(claim.file):
             claims.drop(claim)  # all was in place; only the decision could not be read any more
+            publish.forget(self._layout, claim.ticket)
         else:
             self._identify(case)
 
@@ -276,6 +279,7 @@ class Desk:
         if self._limits.bounded and case.failures >= MOST_TROUBLES:
             self._gone(case)
             self.tally.left.append(f"{case.claim.shown}: {reply.text}")
+            self.tally.given_up.add(self._layout.inbox / case.claim.place / case.claim.name)
             self._released(case)
         else:
             self._queue.append(case)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import contextlib
+import logging
 from collections.abc import Callable
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
@@ -46,6 +47,9 @@ class Events:
 def _observer(inbox: Path, notice: Callable[[FileSystemEvent], None]) -> Any:
     from watchdog.events import FileSystemEventHandler
     from watchdog.observers import Observer
+
+    # it reports its own end as an error; whether it lives is looked after here
+    logging.getLogger("watchdog").setLevel(logging.CRITICAL)
 
     class Handler(FileSystemEventHandler):
         def on_any_event(self, event: FileSystemEvent) -> None:

@@ -15,6 +15,7 @@ import contextlib
 import errno
 import hashlib
 import json
+from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -116,8 +117,8 @@ def closed(layout: Layout, claim: Claim, done: Done) -> None:
     left = [source for source, _ in done.moves if is_there(claim.folder / source)]
     if left:
         raise OSError(errno.EBUSY, "not in its place yet", left[0])
+    _free(_reservation(layout, claim.place, done.stem), claim)  # while the claim still tells the ticket
     drop(claim)
-    _free(_reservation(layout, claim.place, done.stem), claim)
 
 
 def _reserved(layout: Layout, claim: Claim, stem: str) -> str:
@@ -180,13 +181,21 @@ def _is_inside(base: Path, relative: str) -> bool:
     return bool(parts) and not Path(relative).is_absolute() and ".." not in parts
 
 
-def forget_reservations(layout: Layout) -> None:
+def forget(layout: Layout, ticket: str) -> None:
+    """Remove the reservations of a claim that is gone."""
+    _forget(layout, lambda held: held == ticket)
+
+
+def forget_all(layout: Layout) -> None:
     """Remove reservations that no claim stands behind; only for a service that is alone on the folder."""
     claims = [seen(folder) for folder in layout.working.iterdir()]
-    if None in claims:
-        return
-    tickets = {claim.ticket for claim in claims if claim is not None}
+    if None not in claims:
+        tickets = {claim.ticket for claim in claims if claim is not None}
+        _forget(layout, lambda held: held not in tickets)
+
+
+def _forget(layout: Layout, which: Callable[[str], bool]) -> None:
     for path in layout.names.iterdir():
         with contextlib.suppress(OSError):
-            if path.read_text("ascii") not in tickets:
+            if which(path.read_text("ascii")):
                 path.unlink()

@@ -21,9 +21,9 @@ from sheetqc.folder.layout import Layout
 from sheetqc.folder.log import Log
 from sheetqc.folder.names import is_conflict_copy
 from sheetqc.folder.owners import Neighbours, Owner, this_host
-from sheetqc.folder.publish import forget_reservations
+from sheetqc.folder.publish import forget_all
 from sheetqc.folder.summary import KEY, Summary
-from sheetqc.folder.sweep import Sweep
+from sheetqc.folder.sweep import PATIENCE, Sweep
 from sheetqc.folder.workers import Workers, process_pool
 
 SETTLE = 0.25
@@ -112,7 +112,8 @@ def serve(
         _signals(wake.end),
     ):
         desk = Desk(layout, answer, pool, journal, log, limits)
-        sweep = Sweep(layout.inbox, settle, _ONCE_PATIENCE) if once else Sweep(layout.inbox, settle)
+        patience = _ONCE_PATIENCE if once else PATIENCE
+        sweep = Sweep(layout.inbox, settle, patience, excluded=desk.tally.given_up)
         summary = Summary(layout, after, pool, log)
         service = _Service(layout, owner, desk, sweep, summary, pool, wake, log, workers, once=once)
         service.run(polling=polling or once)
@@ -204,7 +205,7 @@ class _Service:
         self._neighbours.forget()
         others = [p for p in self._layout.owners.glob("*.lock") if p.stem != self._owner.name]
         if not others:
-            forget_reservations(self._layout)
+            forget_all(self._layout)
         if not self._once:
             self._pool.start()
             self._log.say(f"serving {self._layout.root}; drop workbooks into {self._layout.inbox}")
@@ -278,6 +279,7 @@ class _Service:
         """Whether nothing is left that can be done now."""
         if self._desk.held or self._summary.running:
             return False
+        self._sweep.look(time.monotonic())
         if any(not watched.hindrance or watched.pause < 1.0 for watched in self._sweep.waiting()):
             return False
         return not self._summary.is_due() or self._summary.failures >= _MOST_SUMMARIES

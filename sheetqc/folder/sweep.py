@@ -107,12 +107,17 @@ class Sweep:
     inbox: Path
     settle: float
     patience: float = PATIENCE
+    excluded: set[Path] = field(default_factory=set)
+    """Files given back for good: not looked at again."""
+
     watched: dict[Path, Watched] = field(default_factory=dict)
 
     def look(self, now: float) -> None:
         """Take note of what lies in in/ now."""
         seen = {}
         for dropped in dropped_files(self.inbox):
+            if dropped.path in self.excluded:
+                continue
             known = self.watched.get(dropped.path)
             same = known is not None and known.dropped == dropped
             seen[dropped.path] = known if known is not None and same else Watched(dropped, now)

@@ -33,7 +33,12 @@ def content_of(path: Path) -> str:
 
 
 def answer(path: Path, into: Path) -> Outcome:
-    """Answer a package; words in its content make it slow, failing or deadly."""
+    """Answer a package; words in its content make it slow, failing or deadly.
+
+    Where STANDIN_PIDS names a folder, the process leaves its number there, so that it can be killed.
+    """
+    if "STANDIN_PIDS" in os.environ:
+        (Path(os.environ["STANDIN_PIDS"]) / str(os.getpid())).touch()
     try:
         content = content_of(path)
     except zipfile.BadZipFile as error:
@@ -47,7 +52,7 @@ def answer(path: Path, into: Path) -> Outcome:
         os._exit(3)
     if "fails" in content:
         raise RuntimeError("an error nobody expected")
-    if "full" in content and not (path.parent / "room").exists():
+    if "always full" in content or ("full" in content and not (path.parent / "room").exists()):
         (path.parent / "room").touch()
         raise OSError(errno.ENOSPC, "No space left on device")
     if "faulty disk" in content:
