@@ -1,0 +1,128 @@
+"""A workbook read into a study."""
+
+from __future__ import annotations
+
+import hashlib
+import struct
+import zipfile
+import zlib
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
+from pathlib import Path
+
+from lxml import etree
+
+from sheetqc.errors import DamagedWorkbook, NothingToAnswer, WorkbookError
+from sheetqc.intake.blocks import Block, blocks_of
+from sheetqc.intake.book import Book, open_book
+from sheetqc.intake.characteristics import characteristics_of, require
+from sheetqc.intake.counts import counts_of
+from sheetqc.intake.doubts import Doubts, listed
+from sheetqc.intake.gauge import gauge_studies_of
+from sheetqc.intake.header import header_of
+from sheetqc.intake.measurements import pieces_of
+from sheetqc.intake.samples import samples_of
+from sheetqc.study import Source, Study
+from sheetqc.vocabulary import TAGS
+
+
+def read(path: Path) -> Study:
+    """The study a workbook holds; the workbook is only read.
+
+    Raises
+    ------
+    MissingWorkbook, NotAWorkbook, EncryptedWorkbook, DamagedWorkbook, UnsafeWorkbook : a file that cannot be read
+    NothingToAnswer : no tag, or nothing usable below the tags
+    """
+    doubts = Doubts()
+    with _foreign_errors(path), open_book(path) as book:
+        source = source_of(path)
+        blocks = _blocks(book, doubts)
+        try:
+            return _study(source, blocks, doubts)
+        except NothingToAnswer as error:
+            raise NothingToAnswer(
+                error.met, expected=error.expected, advice=error.advice, file=path, cell=error.cell
+            ) from None
+
+
+def source_of(path: Path) -> Source:
+    """Which file it is: name, hash and size."""
+    digest = hashlib.sha256()
+    size = 0
+    with path.open("rb") as file:
+        while block := file.read(1 << 20):
+            digest.update(block)
+            size += len(block)
+    return Source(name=path.name, sha256=digest.hexdigest(), bytes=size)
+
+
+@contextmanager
+def _foreign_errors(path: Path) -> Iterator[None]:
+    """The one border where what other libraries raise about a file becomes an error of ours."""
+    try:
+        yield
+    except WorkbookError as error:
+        if error.file is None:
+            error.file = path
+        raise
+    except (
+        zipfile.BadZipFile,
+        zlib.error,
+        etree.LxmlError,
+        struct.error,
+        EOFError,
+        NotImplementedError,
+        UnicodeDecodeError,
+    ) as error:
+        raise DamagedWorkbook(
+            "the workbook is damaged and cannot be read",
+            advice="Open it in the spreadsheet program, save it again and send it again.",
+            file=path,
+        ) from error
+
+
+def _blocks(book: Book, doubts: Doubts) -> list[Block]:
+    blocks: list[Block] = []
+    for sheet in book.candidates():
+        found = blocks_of(sheet)
+        if sheet.visible:
+            blocks.extend(found)
+        elif found:
+            cells = [b.at for b in found]
+            doubts.add(
+                "hidden-sheet",
+                "caution",
+                f"The hidden sheet '{sheet.name}' holds {listed([f'{b.tag} in {b.at.address}' for b in found])}; "
+                "hidden sheets are left alone. Unhide it if it belongs to the study.",
+                cells,
+            )
+    if not blocks:
+        hidden = f" ({doubts.study[0].text})" if doubts.study else ""
+        raise NothingToAnswer(
+            f"no cell of a visible sheet holds a tag{hidden}",
+            expected=f"at least {TAGS[1]} and {TAGS[2]}",
+            advice="Write the tags into cells above the tables, or fill in a blank intake workbook.",
+        )
+    return blocks
+
+
+def _study(source: Source, blocks: Sequence[Block], doubts: Doubts) -> Study:
+    by_tag = {tag: [b for b in blocks if b.tag == tag] for tag in TAGS}
+    header = header_of(by_tag["qc:study"], doubts)
+    characteristics = characteristics_of(by_tag["qc:characteristics"], doubts)
+    counts = counts_of(by_tag["qc:counts"], doubts)
+    if not counts or characteristics or by_tag["qc:characteristics"] or by_tag["qc:measurements"]:
+        require(characteristics, by_tag["qc:characteristics"], doubts)
+    pieces = [piece for b in by_tag["qc:measurements"] for piece in pieces_of(b, characteristics, doubts)]
+    samples = samples_of(characteristics, pieces, doubts)
+    return Study(
+        source=source,
+        header=header,
+        characteristics=characteristics,
+        samples=samples,
+        gauge_studies=gauge_studies_of(by_tag["qc:gauge"], characteristics, doubts),
+        counts=counts,
+        findings=doubts.study,
+        findings_of=doubts.of_characteristics,
+    )

@@ -1,0 +1,90 @@
+"""Samples: the pieces that all blocks give for a characteristic, put together in order."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from sheetqc.intake.doubts import Doubts, listed
+from sheetqc.intake.measurements import Piece
+from sheetqc.study import Characteristic, Sample
+
+
+def samples_of(
+    characteristics: Sequence[Characteristic], pieces: Sequence[Piece], doubts: Doubts
+) -> tuple[Sample, ...]:
+    """A sample for each characteristic that has values, in the order of the characteristics."""
+    samples: list[Sample] = []
+    for asked in characteristics:
+        own = [p for p in pieces if p.characteristic == asked.id and (p.taken or p.left_out)]
+        if not any(p.taken for p in own):
+            _tell_missing(asked, own, doubts)
+        if own:
+            samples.append(_sample(asked, own))
+        if len([p for p in own if p.taken]) > 1:
+            _tell_several(asked, own, doubts)
+    return tuple(samples)
+
+
+def _tell_missing(asked: Characteristic, own: Sequence[Piece], doubts: Doubts) -> None:
+    cell = asked.cell("id")
+    why = "all its rows are left out" if own else f"no column below qc:measurements is headed {asked.id} or has values"
+    doubts.add(
+        "no-values",
+        "stop",
+        f"{asked.id} ({cell}) has no usable measured values: {why}. Send the values, or take the row out.",
+        () if cell is None else (cell,),
+        of=asked.id,
+    )
+
+
+def _tell_several(asked: Characteristic, own: Sequence[Piece], doubts: Doubts) -> None:
+    ats = [p.block.at for p in own if p.taken]
+    doubts.add(
+        "several-blocks",
+        "note",
+        f"The values of {asked.id} stand in {len(ats)} blocks ({listed([str(a) for a in ats])}) and were joined in "
+        "this order.",
+        ats,
+        of=asked.id,
+    )
+
+
+def _sample(asked: Characteristic, own: Sequence[Piece]) -> Sample:
+    taken = [t for p in own for t in p.taken]
+    return Sample(
+        characteristic=asked.id,
+        values=tuple(t.value for t in taken),
+        cells=tuple(t.cell for t in taken),
+        subgroups=_subgroups(own),
+        times=_joined([p.times for p in own], own),
+        streams=_joined([p.streams for p in own], own),
+        censored=tuple(t.mark for t in taken) if any(t.mark for t in taken) else (),
+        copied=tuple(t.copied for t in taken) if any(t.copied for t in taken) else (),
+        left_out=tuple(place for p in own for place in p.left_out),
+    )
+
+
+def _joined(columns: Sequence[list[str] | None], own: Sequence[Piece]) -> tuple[str, ...] | None:
+    if all(column is None for column in columns):
+        return None
+    joined: list[str] = []
+    for column, piece in zip(columns, own, strict=True):
+        joined.extend(column if column is not None else [""] * len(piece.taken))
+    return tuple(joined)
+
+
+def _subgroups(own: Sequence[Piece]) -> tuple[str, ...] | None:
+    """Labels of all pieces; where two blocks use the same label, the block's place is added to keep them apart."""
+    columns = [p.subgroups for p in own]
+    seen: set[str] = set()
+    clash = False
+    for column in columns:
+        labels = set(column or ())
+        clash = clash or bool(labels & seen)
+        seen |= labels
+    if clash:
+        columns = [
+            None if c is None else [f"{p.block.at.sheet} {p.block.at.address}: {label}" for label in c]
+            for c, p in zip(columns, own, strict=True)
+        ]
+    return _joined(columns, own)
