@@ -12,6 +12,7 @@ The number of `answer-` folders is the number of tries begun, so that it survive
 from __future__ import annotations
 
 import contextlib
+import errno
 import json
 import secrets
 import time
@@ -121,6 +122,9 @@ def take_back(layout: Layout, owner: str, folder: Path) -> Claim | None:
         patiently(lambda: folder.replace(mine))
     except FileNotFoundError:
         return None
+    claim = _read(mine)
+    if claim is not None:
+        _let_go(layout, claim)
     claim = _opened(mine)
     if claim is not None and _was_given_back(layout, claim):
         remove(claim.file)
@@ -176,10 +180,15 @@ def drop(claim: Claim) -> None:
     """Remove a claim, but never the file it is about: while that is in it, the claim stays.
 
     The decision goes last, so that a half removed claim is known for what it is.
+
+    Raises
+    ------
+    OSError : when the claim still holds its file, or cannot be removed now
     """
+    if is_there(claim.file):
+        raise OSError(errno.EBUSY, "the claim still holds its file", str(claim.file))
     for path in (claim.folder / "file").glob("*"):
-        if path != claim.file:
-            remove(path)
+        remove(path)
     with contextlib.suppress(FileNotFoundError):
         (claim.folder / "file").rmdir()
     for path in claim.folder.glob("answer-*"):
@@ -198,11 +207,10 @@ def _new_folder(layout: Layout, owner: str) -> Path:
 
 
 def _move_in(path: Path, claim: Claim) -> None:
-    if path.parent.stat().st_dev == claim.folder.stat().st_dev:
+    if _same_volume(path.parent, claim.folder):
         patiently(lambda: path.rename(claim.file))
         return
-    # a rename within in/ decides between services; the claim's folder name in it tells whose it is
-    held = path.with_name(f".{claim.folder.name}.{split(claim.name)[1]}.sheetqc-claim")
+    held = held_name(path, claim)  # a rename within in/ decides between services; the copy may take its time
     patiently(lambda: path.rename(held))
     try:
         move(held, claim.file)
@@ -210,6 +218,30 @@ def _move_in(path: Path, claim: Claim) -> None:
         with contextlib.suppress(OSError):
             put_back(held, path)
         raise
+
+
+def held_name(path: Path, claim: Claim) -> Path:
+    """Name beside a file under which it is held in in/ while it is copied to another volume."""
+    return path.with_name(f".{claim.ticket}.sheetqc-claim")
+
+
+def _same_volume(one: Path, other: Path) -> bool:
+    return one.stat().st_dev == other.stat().st_dev
+
+
+def _let_go(layout: Layout, claim: Claim) -> None:
+    """End what a kill on the way from another volume has left: the copy is whole, or it is none."""
+    target = layout.inbox / claim.place / claim.name
+    held = held_name(target, claim)
+    if not is_there(held):
+        return
+    if is_there(claim.file):
+        remove(held)
+        return
+    stem, suffix = split(claim.name)
+    for free in numbered(stem):
+        if put_back(held, target.with_name(free + suffix)):
+            return
 
 
 def _write(claim: Claim) -> None:
