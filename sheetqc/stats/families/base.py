@@ -158,6 +158,10 @@ class Family(ABC):
             theta = self._fit(rows)
         return theta.reshape(*values.shape[:-1], len(self.parameter_names))
 
+    def within(self, lower: float | None, upper: float | None) -> Family:
+        """The family for values that cannot pass the given natural bounds; itself where it has no use for them."""
+        return self
+
     def information(self, x: ArrayLike, theta: ArrayLike) -> Array:
         """Observed information, minus the second derivatives of the log-likelihood: shape (..., k, k)."""
         from sheetqc.stats.families.information import observed_information

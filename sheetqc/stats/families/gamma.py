@@ -83,7 +83,7 @@ def fit_gamma(x: Array) -> Array:
     gap = np.mean(d - np.log1p(d), axis=-1)
     a = (3 - gap + np.sqrt((gap - 3) ** 2 + 24 * gap)) / (12 * gap)
     for _ in range(30):
-        inverse = 1 / a + (_excess(a) - gap) / (a * a * (1 / a - special.polygamma(1, a)))
+        inverse = 1 / a + (log_minus_digamma(a) - gap) / (a * a * (1 / a - special.polygamma(1, a)))
         step = np.abs(inverse * a - 1)
         a = 1 / inverse
         if np.max(step) < 1e-8:
@@ -91,7 +91,7 @@ def fit_gamma(x: Array) -> Array:
     return np.stack([a, mean / a], axis=-1)
 
 
-def _excess(a: Array) -> Array:
+def log_minus_digamma(a: Array) -> Array:
     """log a - psi(a), by its asymptotic series where the difference would lose digits."""
     square = 1 / (a * a)
     series = 0.5 / a + square * (1 / 12 - square * (1 / 120 - square * (1 / 252 - square / 240)))
