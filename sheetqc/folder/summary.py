@@ -18,6 +18,9 @@ KEY = "summary"
 _APART = 20.0
 """Seconds between two summaries while files keep coming."""
 
+_SHARE = 9
+"""At least so many times as long as the last summary took is left until the next."""
+
 _FIRST_PAUSE, _LONGEST_PAUSE = 1.0, 60.0
 
 
@@ -34,7 +37,8 @@ class Summary:
         self._log = log
         self._mark = ""
         self._running = False
-        self._last = -_APART
+        self._began = self._last = -_APART
+        self._apart = _APART
         self._not_before = 0.0
         self.failures = 0
 
@@ -49,24 +53,28 @@ class Summary:
 
     def next_time(self) -> float | None:
         """When (monotonic) it should be made; None when not, or when it is being made."""
-        return None if self._running or not self.is_due() else max(self._not_before, self._last + _APART)
+        return None if self._running or not self.is_due() else max(self._not_before, self._last + self._apart)
 
     def start(self, *, quiet: bool) -> None:
         """Have it made if it is due: at once when the folder is quiet, else when some time has passed."""
         now = time.monotonic()
-        if self._renew is None or self._running or now < self._not_before or not (quiet or now - self._last >= _APART):
+        if self._renew is None or self._running or now < self._not_before:
+            return
+        if not quiet and now - self._last < self._apart:
             return
         try:
             self._mark = self._layout.due.read_text("ascii")
         except OSError:
             return
         self._running = True
+        self._began = now
         self._workers.submit(KEY, self._renew, self._layout.root)
 
     def finished(self, future: Future[object]) -> None:
         """Take in how it went."""
         self._running = False
         self._last = time.monotonic()
+        self._apart = max(_APART, _SHARE * (self._last - self._began))
         error = None if future.cancelled() else future.exception()
         if future.cancelled():
             return
