@@ -13,7 +13,8 @@ class Content:
     """A cell that is more than a plain number or a plain text.
 
     `number` is the stored number, `text` what stands there in words, `formula` the formula behind it ("" for none;
-    "=" for one whose text is kept elsewhere). `struck` tells of a line through it, `percent` of a percent format.
+    "=" for one whose text is kept elsewhere). `struck` tells of a line through it, `percent` of a percent format,
+    `computed` of a formula without a stored result whose value was worked out here.
     """
 
     nature: Nature
@@ -22,6 +23,7 @@ class Content:
     formula: str = ""
     struck: bool = False
     percent: bool = False
+    computed: bool = False
 
 
 Held = float | str | Content

@@ -28,6 +28,8 @@ def _of_block(block: Block, doubts: Doubts) -> DefectCounts | None:
     if headings is None or "category" not in fields or "count" not in fields:
         no_heading_row(block, doubts)
         return None
+    if not headings.data_rows():
+        return None
     rows = [r for r in headings.data_rows() if not _is_total(block, r, fields["category"])]
     sheet = block.sheet
     texts = [shown(h) for r in rows for f in _NUMBERS if f in fields and is_text(h := sheet.at(r, fields[f])) and h]

@@ -33,8 +33,10 @@ def gauge_studies_of(
 def _of_block(block: Block, characteristics: Sequence[Characteristic], doubts: Doubts) -> list[GaugeStudy]:
     names = Names(characteristics)
     headings = heading_row(block, lambda text: vocabulary.field_of("gauge", text) is not None)
-    if headings is None or not headings.data_rows():
+    if headings is None:
         no_heading_row(block, doubts)
+        return []
+    if not headings.data_rows():
         return []
     columns = columns_of(headings, "gauge", names, doubts)
     missing = [name for name in ("part", "appraiser") if name not in columns.fields]

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterator, Sequence
 from typing import Any
 
 from sheetqc import vocabulary
@@ -14,8 +14,6 @@ from sheetqc.intake.figures import figure_in, tidied
 from sheetqc.study import Header
 
 _TEXTS = ("part_number", "part_name", "supplier", "lot", "date", "prepared_by", "note")
-_VALUE_COLUMNS = 4
-"""Columns right of a label in which its value is looked for (labels are often merged over some)."""
 
 
 def header_of(blocks: Sequence[Block], doubts: Doubts) -> Header:
@@ -35,18 +33,13 @@ def header_of(blocks: Sequence[Block], doubts: Doubts) -> Header:
 
 def _collect(block: Block, entries: dict[str, tuple[Held, Cell]], doubts: Doubts) -> None:
     unknown: list[tuple[str, Cell]] = []
-    for row in block.rows():
-        columns = block.columns(row)
-        label = block.sheet.text(row, columns[0])
+    for row, label_column, value_column in _pairs(block):
+        label = block.sheet.text(row, label_column)
         field = vocabulary.field_of("study", label)
-        beside = [c for c in columns[1:] if c <= columns[0] + _VALUE_COLUMNS]
         if field is None:
-            if beside:
-                unknown.append((label, block.sheet.cell(row, columns[0])))
+            unknown.append((label, block.sheet.cell(row, label_column)))
             continue
-        if not beside:
-            continue
-        held, cell = block.sheet.rows[row][beside[0]], block.sheet.cell(row, beside[0])
+        held, cell = block.sheet.rows[row][value_column], block.sheet.cell(row, value_column)
         if field in entries:
             doubts.add(
                 "label-twice",
@@ -65,6 +58,24 @@ def _collect(block: Block, entries: dict[str, tuple[Held, Cell]], doubts: Doubts
             f"{'are' if len(unknown) > 1 else 'is'} not known and was not used. Known labels are {known}.",
             [cell for _, cell in unknown],
         )
+
+
+def _pairs(block: Block) -> Iterator[tuple[int, int, int]]:
+    """Row, column of the label and column of the value, wherever both are filled in.
+
+    Labels may be merged over several columns: the values stand in the next column that holds anything at all.
+    """
+    used = sorted({c for row in block.rows() for c in block.columns(row)})
+    labels = [c for c in used if any(_is_label(block, row, c) for row in block.rows())][:1]
+    values = [c for c in used if labels and c > labels[0]][:1]
+    for row in block.rows():
+        held = block.sheet.rows[row]
+        if values and labels[0] in held and values[0] in held:
+            yield row, labels[0], values[0]
+
+
+def _is_label(block: Block, row: int, column: int) -> bool:
+    return vocabulary.field_of("study", block.sheet.text(row, column)) is not None
 
 
 def _value(field: str, held: Held, cell: Cell, doubts: Doubts) -> Any | None:

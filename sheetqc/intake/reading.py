@@ -15,6 +15,7 @@ from lxml import etree
 from sheetqc.errors import DamagedWorkbook, NothingToAnswer, WorkbookError
 from sheetqc.intake.blocks import Block, blocks_of
 from sheetqc.intake.book import Book, open_book
+from sheetqc.intake.calculation import Calculation
 from sheetqc.intake.characteristics import characteristics_of, require
 from sheetqc.intake.counts import counts_of
 from sheetqc.intake.doubts import Doubts, listed
@@ -84,7 +85,9 @@ def _foreign_errors(path: Path) -> Iterator[None]:
 
 def _blocks(book: Book, doubts: Doubts) -> list[Block]:
     blocks: list[Block] = []
-    for sheet in book.candidates():
+    calculation = Calculation(book)
+    for candidate in book.candidates():
+        sheet = calculation.calculated(candidate) if blocks_of(candidate) else candidate
         found = blocks_of(sheet)
         if sheet.visible:
             blocks.extend(found)

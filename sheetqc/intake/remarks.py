@@ -107,6 +107,13 @@ REMARKS: tuple[Remark, ...] = (
         text="hold a mark or word beside the figure; the figure alone was used. Check them.",
     ),
     Remark(
+        met="computed",
+        code="formula-computed",
+        level="caution",
+        text="hold formulas whose results are not stored in the file; they are simple and were computed. Open the "
+        "workbook in the spreadsheet program and save it to be sure.",
+    ),
+    Remark(
         met="bounded",
         code="censored-value",
         level="note",

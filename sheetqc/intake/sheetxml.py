@@ -125,12 +125,13 @@ class SheetReader:
 
     def _content(self, cell: Any) -> Held | None:
         value: str | None = None
+        stored = False
         formula: str | None = None
         inline = ""
         for child in cell:
             name = child.tag[-1]
             if name == "v":
-                value = child.text
+                value, stored = child.text, True
             elif name == "f":
                 formula = "=" + (child.text or "")
             elif name == "s" and local(child.tag) == "is":
@@ -141,7 +142,8 @@ class SheetReader:
         if kind == "inlineStr" or (value is None and inline):
             return self._text(inline, formula, looks)
         if value is None:
-            return None if formula is None else Content(nature="uncalculated", text=formula, formula=formula)
+            nothing = formula is None or (stored and kind == "str")
+            return None if nothing else Content(nature="uncalculated", text=formula or "", formula=formula or "")
         return self._valued(kind, value, formula, looks)
 
     def _valued(self, kind: str, value: str, formula: str | None, looks: Format) -> Held | None:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import defaultdict
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from sheetqc import vocabulary
 from sheetqc.finding import Cell
@@ -67,6 +67,9 @@ class Taking:
     def _from_content(self, held: Content, cell: Cell) -> Taken | None:
         if held.nature == "text":
             taken = self._from_text(held.text, cell)
+        elif held.computed and held.number is not None:
+            self._note("computed", cell, f"{held.formula} as {plain(held.number)}")
+            taken = replace(self._from_number(held.number, held.percent, cell), copied=True)
         elif held.nature == "number" and held.number is not None:
             taken = self._from_number(held.number, held.percent, cell)
         else:
@@ -105,9 +108,10 @@ class Taking:
         if number is None:
             self._note("ambiguous", cell, tidied(text))
             return None
-        if number != likely:
+        taken = self._with_rest(number, figure, text, cell)
+        if number != likely and taken is not None:
             self._note("resolved", cell, f"{tidied(text)} as {plain(number)}")
-        return self._with_rest(number, figure, text, cell)
+        return taken
 
     def _with_rest(self, number: float, figure: Figure, text: str, cell: Cell) -> Taken | None:
         """The value of a text, by what was typed after the figure: nothing, a unit, or a mark."""
