@@ -1,0 +1,43 @@
+"""The control chart: subgroup means or single values against the limits of their own scatter, and its spread track."""
+
+from __future__ import annotations
+
+from sheetqc.sheets.axis import Axis, axis_around
+from sheetqc.sheets.charts.common import CENTRE, CONTROL, Drawing, dot, numeric, solid
+from sheetqc.sheets.charts.request import ChartRequest
+from sheetqc.sheets.charts.time_order import order_axis
+from sheetqc.sheets.palette import ACCENT, INK
+from sheetqc.sheets.workings.control import Track
+
+
+def location_track(request: ChartRequest) -> Drawing | None:
+    """The chart of means or single values; None without a control chart."""
+    track = request.workings.location
+    return None if track is None else _drawn(request, track, "chart.location")
+
+
+def spread_track(request: ChartRequest) -> Drawing | None:
+    """The chart of ranges, standard deviations or moving ranges; None without a control chart."""
+    track = request.workings.spread
+    return None if track is None else _drawn(request, track, "chart.spread")
+
+
+def _drawn(request: ChartRequest, track: Track, title: str) -> Drawing:
+    say, n = request.say, len(track.value.values)
+    drawing = Drawing(
+        request.workbook, request.sheet, say(title, track=track.title, unit=request.unit_in_words), request.rows
+    )
+    drawing.place()
+    drawing.line(track.point, track.lower, CONTROL, name=say("chart.control_lower"))
+    drawing.line(track.point, track.upper, CONTROL, name=say("chart.control_upper"))
+    drawing.line(track.point, track.centre, CENTRE, name=say("chart.centre"))
+    drawing.points(track.point, track.value, dot(size=3 if n > 60 else 4), line=solid(ACCENT, 0.5), name=track.title)
+    drawing.points(track.point, track.outside, dot(INK, 7, "diamond"), name=say("chart.outside"))
+    drawing.axes(order_axis(n), numeric(_axis(track)))
+    return drawing
+
+
+def _axis(track: Track) -> Axis:
+    values = [float(v) for v in track.value.values]
+    ends = [float(v) for v in (*track.lower.values, *track.upper.values)]
+    return axis_around([*values, *ends], [], pieces=4, floor=0.0 if min(*values, *ends) >= 0 else None)

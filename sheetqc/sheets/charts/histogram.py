@@ -1,0 +1,63 @@
+"""The histogram with the density of the model in use and the limits, on one numeric axis."""
+
+from __future__ import annotations
+
+from sheetqc.sheets.axis import Axis, nice_step
+from sheetqc.sheets.charts.common import LIMIT, NO_LINE, NO_MARKER, Drawing, dot, label_at_end, numeric, solid
+from sheetqc.sheets.charts.request import ChartRequest
+from sheetqc.sheets.palette import ACCENT, BAR, INK
+
+POINTS_PER_PIXEL = 0.75
+
+
+def histogram(request: ChartRequest) -> Drawing | None:
+    """The chart; None when the values have no spread.
+
+    The bars are filled by stripes: error bars that fall from the top of each bar to the ground.
+    """
+    work, say = request.workings, request.say
+    bars, axis = work.bars, work.axis
+    if bars is None or axis is None:
+        return None
+    drawing = Drawing(request.workbook, request.sheet, say("chart.histogram", unit=request.unit_in_words), request.rows)
+    drawing.place(right=14, top=40)
+    stripe = solid(BAR, (bars.stripe + 0.6) * POINTS_PER_PIXEL)
+    top = _top(request)
+    drawing.points(
+        bars.stripe_x,
+        bars.stripe_y,
+        NO_MARKER,
+        line=NO_LINE,
+        name=say("chart.bars"),
+        y_error_bars={"type": "percentage", "value": 100, "direction": "minus", "end_style": 0, "line": stripe},
+    )
+    drawing.line(bars.outline_x, bars.outline_y, solid("#7FA9BA", 0.75), name=say("chart.bars"))
+    if work.curve is not None:
+        drawing.line(work.curve.x, work.curve.share, solid(ACCENT, 2.0), name=say("chart.model"))
+    for key, cell in (("lower", work.inputs.lower), ("upper", work.inputs.upper)):
+        line = work.lines.upright(say(f"chart.{key}"), cell, axis, 0.0, top.maximum)
+        label = label_at_end(say(f"chart.{key}"), position="above")
+        drawing.line(line.x, line.y, LIMIT, name=say(f"chart.{key}"), label=label)
+    _draw_quantiles(request, drawing, axis, top)
+    drawing.axes(numeric(axis, grid=False), numeric(top, num_format="0%"))
+    return drawing
+
+
+def _draw_quantiles(request: ChartRequest, drawing: Drawing, axis: Axis, top: Axis) -> None:
+    """Triangles on the ground at the outer quantiles of the model in use."""
+    work, say = request.workings, request.say
+    for key in ("x_low", "x_high"):
+        if key in work.quantities:
+            line = work.lines.upright(say(f"chart.{key}"), work.quantities[key], axis, 0.0, 0.07 * top.maximum)
+            drawing.points(line.x.part(0, 1), line.y.part(0, 1), dot(INK, 6, "triangle"), name=say(f"chart.{key}"))
+
+
+def _top(request: ChartRequest) -> Axis:
+    """The axis of the shares, with room above the highest bar and the curve."""
+    bars, curve = request.workings.bars, request.workings.curve
+    assert bars is not None
+    highest = bars.highest
+    if curve is not None:
+        highest = max(highest, min(2 * highest, max(float(v) for v in curve.share.values)))
+    step = nice_step(1.12 * highest, 4)
+    return Axis(minimum=0.0, maximum=round(-(-1.12 * highest // step)) * step, step=step)

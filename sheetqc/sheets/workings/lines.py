@@ -1,0 +1,78 @@
+"""Two-point lines that draw limits, quantiles and the requirement, so that they move when a cell is changed."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from sheetqc.sheets.axis import Axis
+from sheetqc.sheets.cells import NA, Column, Placed
+from sheetqc.sheets.expressions import constant
+from sheetqc.sheets.job import Job
+from sheetqc.sheets.workings.ground import FIRST, Ground
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Line:
+    """Two points."""
+
+    x: Column
+    y: Column
+
+
+class Lines:
+    """Writes lines below one another.
+
+    Parameters
+    ----------
+    job : the characteristic
+    ground : where there is room
+    """
+
+    def __init__(self, job: Job, ground: Ground) -> None:
+        heads = tuple(job.say(f"work.lines.{k}") for k in ("line", "x", "y"))
+        self._job = job
+        self._column = ground.block(job.say("work.lines"), heads, (130,))
+        self._row = FIRST
+
+    def upright(self, label: str, cell: Placed, axis: Axis, low: float, high: float) -> Line:
+        """An upright line at what the cell holds, between two heights; not drawn where it holds no number.
+
+        A place that is no number would turn the whole series into one of text, so the axis' end stands in for it.
+        """
+        x = f"IF(ISNUMBER({cell.ref}),{cell.ref},{constant(axis.minimum)})"
+        value = cell.number if cell.is_number else axis.minimum
+        return self._line(
+            label,
+            ([x, x], [value, value]),
+            (
+                [f"IF(ISNUMBER({cell.ref}),{constant(y)},NA())" for y in (low, high)],
+                [y if cell.is_number else NA for y in (low, high)],
+            ),
+        )
+
+    def level(self, label: str, cell: Placed, first: float, last: float) -> Line:
+        """A level line at what the cell holds, from one place to another; not drawn where it holds no number."""
+        y = f"IF(ISNUMBER({cell.ref}),{cell.ref},NA())"
+        value = cell.number if cell.is_number else NA
+        return self._line(label, ([constant(first), constant(last)], [first, last]), ([y, y], [value, value]))
+
+    def constants(self, label: str, values: list[float]) -> Column:
+        """Places below one another that do not move."""
+        pen, row = self._job.pen, self._row
+        pen.text(row, self._column, label, "small")
+        self._row += len(values)
+        return pen.numbers(row, self._column + 1, values)
+
+    def _line(
+        self,
+        label: str,
+        x: tuple[list[str], list[float]],
+        y: tuple[list[str], list[float | str]] | tuple[list[str], list[float]],
+    ) -> Line:
+        pen, row = self._job.pen, self._row
+        pen.text(row, self._column, label, "small")
+        self._row += 2
+        return Line(
+            x=pen.formulas(row, self._column + 1, *x),
+            y=pen.formulas(row, self._column + 2, *y),
+        )

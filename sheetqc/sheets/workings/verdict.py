@@ -1,0 +1,134 @@
+"""The verdict as a formula of estimate, bounds and requirement, and whether it still is the one of the analysis."""
+
+from __future__ import annotations
+
+from sheetqc.assessment import State, Verdict
+from sheetqc.sheets.cells import NONE, Placed
+from sheetqc.sheets.expressions import first_true, literal
+from sheetqc.sheets.job import Job
+from sheetqc.sheets.words import Words
+from sheetqc.sheets.workings.index import Limits
+from sheetqc.sheets.workings.inputs import Inputs
+from sheetqc.sheets.workings.quantities import Quantities
+
+STATES: tuple[State, ...] = ("shown", "likely", "doubtful", "not met", "no verdict")
+
+
+def add_verdict(job: Job, quantities: Quantities, inputs: Inputs) -> None:
+    """Adds condition, verdict, sign and the line of the band."""
+    verdict = job.assessment.verdict
+    condition = quantities.constant("condition", " ".join(verdict.reasons) if verdict.state == "no verdict" else None)
+    state = _add_state(job, quantities, inputs, condition)
+    signs = tuple((f"{state.ref}={literal(job.say.state(s))}", literal(job.say.sign(s))) for s in STATES[:-1])
+    value = _state_now(job, quantities, inputs, condition)
+    formula = first_true(*signs, otherwise=literal(job.say.sign("no verdict")))
+    quantities.add("sign", f'{formula}&"  "&{state.ref}', f"{job.say.sign(value)}  {state.value}")
+    _add_line(job, quantities, inputs)
+
+
+def _parts(quantities: Quantities, verdict: Verdict) -> tuple[Placed, Placed, Placed] | None:
+    keys = (verdict.index, f"{verdict.index}_lower", f"{verdict.index}_upper")
+    if any(key not in quantities for key in keys):
+        return None
+    return quantities[keys[0]], quantities[keys[1]], quantities[keys[2]]
+
+
+def _add_state(job: Job, quantities: Quantities, inputs: Inputs, condition: Placed) -> Placed:
+    words = {state: literal(job.say.state(state)) for state in STATES}
+    parts = _parts(quantities, job.assessment.verdict)
+    now = _state_now(job, quantities, inputs, condition)
+    if parts is None:
+        return quantities.constant("verdict", job.say.state(now), name="Verdict")
+    estimate, lower, upper = parts
+    required = inputs.requirement.ref
+    formula = first_true(
+        (f"OR(LEN({condition.ref})>0,NOT(ISNUMBER({estimate.ref})),NOT(ISNUMBER({required})))", words["no verdict"]),
+        (f"AND(ISNUMBER({lower.ref}),{lower.ref}>={required})", words["shown"]),
+        (f"AND(ISNUMBER({upper.ref}),{upper.ref}<{required})", words["not met"]),
+        (f"{estimate.ref}>={required}", words["likely"]),
+        otherwise=words["doubtful"],
+    )
+    analysed = job.say.state(job.assessment.verdict.state)
+    return quantities.add("verdict", formula, job.say.state(now), name="Verdict", analysed=analysed)
+
+
+def _state_now(job: Job, quantities: Quantities, inputs: Inputs, condition: Placed) -> State:
+    """What the formula gives for what stands in the cells."""
+    parts = _parts(quantities, job.assessment.verdict)
+    if parts is None or condition.value or not parts[0].is_number or not inputs.requirement.is_number:
+        return "no verdict"
+    estimate, lower, upper = parts
+    required = inputs.requirement.number
+    if lower.is_number and lower.number >= required:
+        return "shown"
+    if upper.is_number and upper.number < required:
+        return "not met"
+    return "likely" if estimate.number >= required else "doubtful"
+
+
+def _add_line(job: Job, quantities: Quantities, inputs: Inputs) -> None:
+    """The line of the band: index, bounds, requirement."""
+    say, verdict = job.say, job.assessment.verdict
+    parts = _parts(quantities, verdict)
+    if parts is None:
+        quantities.constant("line", say("band.nothing"))
+        return
+    estimate, lower, upper = parts
+    sure = say("band.sure", confidence=say.percent(job.assessment.confidence))
+    pieces = (
+        (literal(f"{verdict.index} "), verdict.index + " "),
+        _two_decimals(estimate),
+        (literal(say("band.least")), say("band.least")),
+        _two_decimals(lower),
+        (literal(say("band.most")), say("band.most")),
+        _two_decimals(upper),
+        (literal(sure), sure),
+        (literal(say("band.required")), say("band.required")),
+        _two_decimals(inputs.requirement),
+    )
+    quantities.add("line", "&".join(p[0] for p in pieces), "".join(p[1] for p in pieces))
+
+
+def _two_decimals(cell: Placed) -> tuple[str, str]:
+    """A number cut off after two decimals: 1.329 is not 1.33."""
+    formula = f"IF(ISNUMBER({cell.ref}),FIXED(FLOOR({cell.ref}*100+1E-9,1)/100,2,TRUE),{literal(NONE)})"
+    return formula, say_number(cell.number) if cell.is_number else NONE
+
+
+def say_number(value: float) -> str:
+    """What the formula gives: two decimals, cut off."""
+    return f"{(value * 100 + 1e-9) // 1 / 100:.2f}"
+
+
+def add_status(job: Job, quantities: Quantities, inputs: Inputs, limits: Limits) -> None:
+    """Adds whether values and settings still are those of the analysis, and says so in a line."""
+    say: Words = job.say
+    same = _same_values(quantities)
+    values = quantities.add("same_values", f"IF({same},{literal(say('yes'))},{literal(say('no'))})", say("yes"))
+    settings = [
+        _same(cell, quantities.constant(f"analysed.{key}", cell.value, job.decimals.value))
+        for key, cell in (("lower", limits.lower), ("upper", limits.upper), ("requirement", inputs.requirement))
+    ]
+    if inputs.model is not None:
+        title = quantities.constant("analysed.model", inputs.model.value)
+        settings.append(f"{inputs.model.ref}={title.ref}")
+    formula = first_true(
+        (f"{values.ref}<>{literal(say('yes'))}", literal(say("status.stale"))),
+        (f"NOT(AND({','.join(settings)}))", literal(say("status.changed"))),
+        otherwise=literal(say("status.analysed")),
+    )
+    quantities.add("status", formula, say("status.analysed"))
+
+
+def _same_values(quantities: Quantities) -> str:
+    n, total, squares = (quantities[key] for key in ("n", "sum", "sumsq"))
+    n0, total0, squares0 = (quantities.analysed(key) for key in ("n", "sum", "sumsq"))
+    return (
+        f"AND({n.ref}={n0.ref},ABS({total.ref}-{total0.ref})<=1E-9*SQRT({n0.ref}*{squares0.ref}),"
+        f"ABS({squares.ref}-{squares0.ref})<=1E-9*{squares0.ref})"
+    )
+
+
+def _same(cell: Placed, analysed: Placed) -> str:
+    now, then = cell.ref, analysed.ref
+    return f"ISNUMBER({now})=ISNUMBER({then}),ABS(N({now})-N({then}))<=1E-9*ABS(N({then}))"
