@@ -22,8 +22,10 @@ CREATE TABLE IF NOT EXISTS answered (
     finished REAL NOT NULL
 );
 CREATE INDEX IF NOT EXISTS answered_content ON answered (sha256, edition);
-PRAGMA user_version = 1;
+PRAGMA synchronous = OFF;
+PRAGMA journal_mode = TRUNCATE;
 """
+"""A kill does no harm with these settings; after a power cut the journal may be damaged, and is then rebuilt."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -69,19 +71,23 @@ class Journal:
         try:
             with self._base:
                 return self._base.execute(statement, values).fetchall()
-        except (sqlite3.Error, UnicodeEncodeError):
+        except (sqlite3.OperationalError, UnicodeEncodeError):  # held for long, or the share is gone
+            return []
+        except sqlite3.DatabaseError:  # damaged, by a power cut for example
+            self._base.close()
+            self._base = self._opened(fresh=True)
             return []
 
-    def _opened(self) -> sqlite3.Connection:
+    def _opened(self, *, fresh: bool = False) -> sqlite3.Connection:
         path = self._layout.journal
+        if fresh:
+            _remove(path)
         fresh = not path.exists()
         try:
             base = _connected(path)
         except sqlite3.Error:
             fresh = True
-            for damaged in path.parent.glob(path.name + "*"):
-                with contextlib.suppress(OSError):
-                    damaged.unlink()
+            _remove(path)
             try:
                 base = _connected(path)
             except sqlite3.Error:  # a share without locks
@@ -90,6 +96,12 @@ class Journal:
             with base:
                 base.executemany("INSERT OR REPLACE INTO answered VALUES (?, ?, ?, ?, ?, ?)", _found(self._layout))
         return base
+
+
+def _remove(path: Path) -> None:
+    for part in path.parent.glob(path.name + "*"):
+        with contextlib.suppress(OSError):
+            part.unlink()
 
 
 def _connected(path: Path | None) -> sqlite3.Connection:

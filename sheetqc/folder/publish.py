@@ -15,6 +15,7 @@ import contextlib
 import errno
 import hashlib
 import json
+import os
 from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
@@ -149,9 +150,10 @@ def _is_used(layout: Layout, place: str, stem: str) -> bool:
     """Whether any file of this stem stands in the places of results; names differing in case count as the same."""
     wanted = stem.casefold()
     for folder in (layout.answered, layout.originals, layout.returned):
-        with contextlib.suppress(FileNotFoundError):
-            names = [path.name.casefold() for path in (folder / place).iterdir()]
-            if any(_stem_of(name) == wanted for name in names):
+        with contextlib.suppress(FileNotFoundError), os.scandir(folder / place) as entries:
+            # thousands may lie there: the cheap comparison first
+            near = [entry.name for entry in entries if entry.name.casefold().startswith(wanted)]
+            if any(_stem_of(name.casefold()) == wanted for name in near):
                 return True
     return False
 

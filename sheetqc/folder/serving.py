@@ -271,8 +271,8 @@ class _Service:
         waits = [t - now for t in times if t is not None]
         settling = self._sweep.next_look(now)
         if settling is not None and self._desk.waiting < 2 * self._most:
-            waits.append(settling)
             self._next_look = min(self._next_look, now + settling)
+            waits.append(settling)
         return max(0.01, min(waits))
 
     def _is_through(self) -> bool:

@@ -39,6 +39,9 @@ class Watched:
 
     dropped: Dropped
     since: float
+    until: float
+    """Times of the first and the last look that found it as it is."""
+
     state: Completeness | None = None
     hindrance: str = ""
     pause: float = 0.0
@@ -119,8 +122,10 @@ class Sweep:
             if dropped.path in self.excluded:
                 continue
             known = self.watched.get(dropped.path)
-            same = known is not None and known.dropped == dropped
-            seen[dropped.path] = known if known is not None and same else Watched(dropped, now)
+            if known is None or known.dropped != dropped:
+                known = Watched(dropped, now, now)
+            known.until = now
+            seen[dropped.path] = known
         self.watched = seen
 
     def ready(self, now: float, most: int) -> list[Path]:
@@ -147,9 +152,9 @@ class Sweep:
         return news
 
     def next_look(self, now: float) -> float | None:
-        """Seconds until a file could be ready; None when none is waiting to be."""
-        waits = [self._due(w) - now for w in self.watched.values() if not w.dropped.aside]
-        return max(0.0, min(waits)) if waits else None
+        """Seconds until a look could make a file ready; None when no file waits for one."""
+        due = [self._due(w) for w in self.watched.values() if not w.dropped.aside and not self._has_settled(w)]
+        return max(0.0, min(due) - now) if due else None
 
     def waiting(self) -> list[Watched]:
         """Files that are to be taken some time, hindered ones among them."""
@@ -159,12 +164,18 @@ class Sweep:
         """Files that are not taken as they are."""
         return [w.dropped for w in self.watched.values() if w.dropped.aside]
 
-    def _due(self, watched: Watched) -> float:
+    def _settles(self, watched: Watched) -> float:
         wait = {None: self.settle, "whole": self.settle, "other": max(self.settle, OTHER_PATIENCE)}
-        return max(watched.since + wait.get(watched.state, self.patience), watched.not_before)
+        return watched.since + wait.get(watched.state, self.patience)
+
+    def _due(self, watched: Watched) -> float:
+        return max(self._settles(watched), watched.not_before)
+
+    def _has_settled(self, watched: Watched) -> bool:
+        return watched.until >= self._due(watched)
 
     def _is_ready(self, path: Path, watched: Watched, now: float) -> bool:
-        if watched.dropped.aside or now < self._due(watched):
+        if watched.dropped.aside or not self._has_settled(watched):
             return False
         try:
             watched.state = completeness(path)
@@ -173,4 +184,4 @@ class Sweep:
         except OSError as error:
             self.hindered(path, f"cannot be read now: {error.strerror or error}", now)
             return False
-        return now >= self._due(watched)
+        return self._has_settled(watched)

@@ -72,6 +72,31 @@ def test_is_rebuilt_from_the_answers(layout: Layout, damage: str) -> None:
     book.close()
 
 
+def test_is_rebuilt_when_damaged_in_use(layout: Layout, monkeypatch: pytest.MonkeyPatch) -> None:
+    _answered(layout)
+    book = Journal(layout)
+    base, book._base = book._base, _Damaged()  # type: ignore[assignment]
+    base.close()
+    assert book.answer_of("ab", "1") is None
+    found = book.answer_of("ab", "1")
+    assert found is not None
+    book.close()
+
+
+class _Damaged:
+    """A connection to a database whose pages make no sense."""
+
+    def __enter__(self) -> _Damaged:
+        return self
+
+    def __exit__(self, *_: object) -> None: ...
+
+    def close(self) -> None: ...
+
+    def execute(self, *_: object) -> None:
+        raise sqlite3.DatabaseError("database disk image is malformed")
+
+
 def test_does_without_a_file(layout: Layout, monkeypatch: pytest.MonkeyPatch) -> None:
     connect = sqlite3.connect
 
