@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 from dataclasses import dataclass
 
 from xlsxwriter.format import Format
 from xlsxwriter.worksheet import CellFormulaTuple, Worksheet
 
-from sheetqc.finding import column_letters
+from sheetqc.finding import Cell, column_letters, quoted
 from sheetqc.sheets.formats import Formats
 
 Value = float | int | str
@@ -119,6 +120,10 @@ class Pen:
         self.sheet.stored_formula(row, column, formula, self.formats(style, number_format), plain(value))
         return Placed(row, column, plain(value))
 
+    def link(self, row: int, column: int, cell: Cell, text: str, style: str = "link") -> None:
+        """A link to a cell of the workbook."""
+        self.sheet.write_url(row, column, f"internal:{quoted(cell.sheet)}!{cell.address}", self.formats(style), text)
+
     def blank(self, row: int, column: int, style: str) -> None:
         """An empty cell with a look."""
         self.sheet.write_blank(row, column, None, self.formats(style))
@@ -146,3 +151,8 @@ def plain(value: Value) -> Value:
     if isinstance(value, str) or type(value) is int:
         return value
     return float(value)
+
+
+def cut(value: float) -> float:
+    """A number cut off after two decimals, as `expressions.cut_off` gives it."""
+    return math.floor(value * 100 + 1e-9) / 100

@@ -7,6 +7,8 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 INDEX = "0.00"
+MOMENT = "0.00;-0.00;0.00"
+"""Looks like an index but is rounded, not cut off."""
 PROBABILITY = "0.000"
 RATE = '[<0.01]"< 0.01";[<10]0.00;#,##0'
 SHARE = "0%"

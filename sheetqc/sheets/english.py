@@ -43,7 +43,8 @@ ENGLISH: Mapping[str, str] = {
     "entry.upper": "Upper limit",
     "entry.requirement": "Required",
     "entry.model": "Model in use",
-    "entry.hint": "Tinted cells may be overwritten: index, bounds, rate, verdict and pictures follow at once.",
+    "entry.hint": "Tinted cells may be overwritten: index, bounds, rate, verdict and pictures follow at once. "
+    "The workings stand at the right, from column AA on.",
     "status.analysed": "As of the analysis.",
     "status.changed": "What-if: limits, requirement or model differ from the analysis.",
     "status.stale": "The values have changed since the analysis: fitted models and bounds are out of date.",
@@ -59,6 +60,7 @@ ENGLISH: Mapping[str, str] = {
     "table.chart": "Chart",
     "table.within_s": "s within subgroups",
     "table.signals": "Rules broken",
+    "table.signal": "{rule}: {points}",
     "table.none": "none",
     "table.ratio": "s within / s in all",
     "table.normal": "A², p of the normal model",
@@ -94,6 +96,10 @@ ENGLISH: Mapping[str, str] = {
     "chart.control_lower": "lower control limit",
     "chart.control_upper": "upper control limit",
     "chart.centre": "centre line",
+    "chart.control.lower": "lower",
+    "chart.control.centre": "centre",
+    "chart.control.upper": "upper",
+    "chart.signal": "other signal",
     "chart.outside": "beyond a control limit",
     "chart.bars": "share of values",
     "chart.model": "model in use",
@@ -106,14 +112,24 @@ ENGLISH: Mapping[str, str] = {
     "chart.required": "required",
     "chart.names": "names of the models",
     "alt.time_order": "{id}: {n} values in time order as joined dots, with dashed specification limits and the mean.",
-    "alt.location": "{id}: control chart of place with dotted control limits; a diamond marks points beyond them.",
-    "alt.spread": "{id}: control chart of spread with dotted control limits; a diamond marks points beyond them.",
+    "alt.location": "{id}: control chart of place with dotted control limits; a diamond marks points beyond them, "
+    "a cross other signals.",
+    "alt.spread": "{id}: control chart of spread with dotted control limits; a diamond marks points beyond them, "
+    "a cross other signals.",
     "alt.histogram": "{id}: histogram of {n} values with the curve of the model in use and dashed specification "
     "limits; triangles mark its 0.135 % and 99.865 % quantiles.",
     "alt.probability": "{id}: probability plot of {n} values on a normal scale with the model in use as a line, a "
     "dotted band around it and dashed specification limits.",
     "alt.candidates": "{id}: Ppk with its interval under each candidate model, the answer on top as a diamond, the "
     "requirement as an upright dash-dot line.",
+    # names of models that are too long for a picture
+    "short.gumbel_max": "largest value",
+    "short.gumbel_min": "smallest value",
+    "short.lognormal_threshold": "lognormal, shifted",
+    "short.weibull_threshold": "Weibull, shifted",
+    "short.gamma_threshold": "gamma, shifted",
+    "short.gev": "extreme value",
+    "short.normal_mixture": "two normals",
     # workings
     "work.quantities": "Quantities (live)",
     "work.quantities.quantity": "Quantity",
@@ -147,7 +163,7 @@ ENGLISH: Mapping[str, str] = {
     "work.candidates.p": "p",
     "work.candidates.admitted": "In the bound",
     "work.candidates.objection": "Objection of the data",
-    "work.region": "Likelihood region (as of the analysis)",
+    "work.region": "What the values leave possible (as of the analysis; 0: for the answer)",
     "work.region.model": "Model no.",
     "work.region.low": "X0.135 %",
     "work.region.median": "X50",
@@ -181,6 +197,7 @@ ENGLISH: Mapping[str, str] = {
     "work.control.lower": "Lower",
     "work.control.upper": "Upper",
     "work.control.outside": "Beyond",
+    "work.control.signal": "Signal",
     "work.lines": "Lines of the pictures",
     "work.lines.line": "Line",
     "work.lines.x": "x",
@@ -219,7 +236,10 @@ ENGLISH: Mapping[str, str] = {
     "quantity.total": "Expected outside, ppm",
     "quantity.total_lower": "at least (as of the analysis)",
     "quantity.total_upper": "at most (as of the analysis)",
-    "quantity.within_s": "s within subgroups (as of the analysis)",
+    "quantity.within_s": "s within subgroups",
+    "quantity.place_mean": "Centre line of place",
+    "quantity.spread_mean": "Centre line of spread",
+    "quantity.spread_constant": "Its constant (d2, c4 or the like)",
     "quantity.Cp": "Cp",
     "quantity.Cpk": "Cpk",
     "quantity.Cp_lower": "Cp at least (as of the analysis)",
@@ -265,6 +285,8 @@ ENGLISH: Mapping[str, str] = {
     "overview.next": "What next",
     "overview.findings": "Findings about the workbook",
     "overview.no_findings": "None.",
+    "page.findings": "Findings about this characteristic",
+    "page.more_findings": "{count} more on the sheet of methods",
     "overview.legend": "How to read a verdict",
     "overview.cautions": "Please note",
     "overview.names": "Defined names: a form elsewhere in this workbook can hold =qc.<Id>.<Quantity>; all are listed "
@@ -303,7 +325,8 @@ ENGLISH: Mapping[str, str] = {
     "methods.within.source": "ISO 22514-2; ISO 7870-2",
     "methods.fit": "Candidate models: maximum likelihood; compared by AICc and Akaike weights.",
     "methods.fit.source": "Burnham & Anderson (2002)",
-    "methods.bound": "Bounds of Ppk and Pp: the extremes over the likelihood regions of all admitted models together.",
+    "methods.bound": "Bounds of Ppk and Pp: the extremes over everything the values leave possible, all admitted "
+    "models together; the quantiles they need stand in the workings of each sheet.",
     "methods.bound.source": "profile likelihood with the model as one more parameter; Meeker & Escobar (1995)",
     "methods.a2": "Normal model: A² with mean and s estimated, p by its published approximation; other models: p by "
     "simulation from the fitted model.",

@@ -67,3 +67,8 @@ def choice(selector: str, expressions: tuple[str, ...]) -> str:
 def constant(value: float) -> str:
     """A number as formulas write it."""
     return repr(float(value)).upper()
+
+
+def cut_off(reference: str) -> str:
+    """A number cut off after two decimals: an index of 1.329 is not 1.33."""
+    return f"FLOOR({reference}*100+1E-9,1)/100"

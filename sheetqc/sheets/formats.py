@@ -15,6 +15,7 @@ SIZE = 10
 STYLES: dict[str, dict[str, Any]] = {
     "plain": {},
     "small": {"font_size": 9},
+    "small_top": {"font_size": 9, "font_color": MUTED, "valign": "top"},
     "muted": {"font_size": 8, "font_color": MUTED},
     "muted_right": {"font_size": 8, "font_color": MUTED, "align": "right"},
     "title": {"font_size": 16, "bold": True},
@@ -31,6 +32,15 @@ STYLES: dict[str, dict[str, Any]] = {
     "words_small": {"text_wrap": True, "valign": "top", "font_size": 9},
     "words_muted": {"text_wrap": True, "valign": "top", "font_size": 8, "font_color": MUTED},
     "head": {"font_size": 8, "font_color": MUTED, "bottom": 1, "bottom_color": HAIRLINE, "valign": "bottom"},
+    "head_indented": {
+        "font_size": 8,
+        "font_color": MUTED,
+        "bottom": 1,
+        "bottom_color": HAIRLINE,
+        "valign": "bottom",
+        "align": "left",
+        "indent": 1,
+    },
     "head_right": {
         "font_size": 8,
         "font_color": MUTED,
@@ -52,12 +62,28 @@ STYLES: dict[str, dict[str, Any]] = {
     "entry": {"bg_color": ENTRY, "border": 1, "border_color": HAIRLINE, "align": "right"},
     "entry_text": {"bg_color": ENTRY, "border": 1, "border_color": HAIRLINE, "align": "left"},
     "link": {"font_color": ACCENT, "underline": 1},
-    "link_top": {"font_color": ACCENT, "underline": 1, "valign": "top"},
+    "link_cell": {
+        "font_color": ACCENT,
+        "underline": 1,
+        "valign": "top",
+        "font_size": 9,
+        "bottom": 4,
+        "bottom_color": HAIRLINE,
+    },
+    "link_small": {"font_color": ACCENT, "underline": 1, "font_size": 8, "valign": "top", "align": "right"},
     "strong": {"bold": True},
     "cell": {"font_size": 9, "valign": "top", "bottom": 4, "bottom_color": HAIRLINE},
     "cell_right": {"font_size": 9, "valign": "top", "align": "right", "bottom": 4, "bottom_color": HAIRLINE},
-    "cell_strong": {"bold": True, "valign": "top", "bottom": 4, "bottom_color": HAIRLINE},
-    "cell_words": {"font_size": 9, "valign": "top", "text_wrap": True, "bottom": 4, "bottom_color": HAIRLINE},
+    "cell_strong": {"bold": True, "valign": "top", "align": "left", "indent": 1, "bottom": 4, "bottom_color": HAIRLINE},
+    "cell_words": {
+        "font_size": 9,
+        "valign": "top",
+        "text_wrap": True,
+        "align": "left",
+        "indent": 1,
+        "bottom": 4,
+        "bottom_color": HAIRLINE,
+    },
 }
 """The named styles; a number format may be added to any of them."""
 

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from sheetqc.assessment import Answer, Assessment
+from sheetqc.assessment import Answer, Assessment, ModelFit
 from sheetqc.finding import Cell
 from sheetqc.sheets.cells import Pen
 from sheetqc.sheets.decimals import Decimals
@@ -27,6 +27,11 @@ class Job:
     say: Words
     decimals: Decimals
     alone: bool = False
+
+    @property
+    def models(self) -> tuple[ModelFit, ...]:
+        """The candidates in the order in which they are shown: best weight first."""
+        return tuple(sorted(self.assessment.models, key=lambda fit: -fit.weight))
 
     @property
     def values(self) -> NDArray[np.float64]:

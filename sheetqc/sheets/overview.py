@@ -12,6 +12,7 @@ from sheetqc.sheets import decimals
 from sheetqc.sheets.cells import NONE, Pen, Placed
 from sheetqc.sheets.page import WrittenPage, lines_of
 from sheetqc.sheets.palette import VERDICT
+from sheetqc.sheets.tables import write_index
 from sheetqc.sheets.words import Words
 from sheetqc.sheets.workings.verdict import STATES
 
@@ -21,6 +22,9 @@ COLUMNS = (
 )  # fmt: skip
 AT = {key: index for index, (key, _) in enumerate(COLUMNS)}
 LAST = len(COLUMNS) - 1
+
+NUMBERS = ("n", "required", "estimate", "at_least", "ppm", "ppm_most")
+INDENTED = ("verdict", "reason", "next")
 
 HEADER = ("part_number", "part_name", "supplier", "lot", "date", "prepared_by")
 MOST_FINDINGS = 12
@@ -78,8 +82,8 @@ def _write_rows(job: OverviewJob, row: int) -> int:
     pen, say = job.pen, job.say
     pen.sheet.set_row_pixels(row, 20)
     for key, column in AT.items():
-        right = key in ("n", "required", "estimate", "at_least", "ppm", "ppm_most")
-        pen.text(row, column, say(f"overview.{key}"), "head_right" if right else "head")
+        style = "head_right" if key in NUMBERS else "head_indented" if key in INDENTED else "head"
+        pen.text(row, column, say(f"overview.{key}"), style)
     first = row + 1
     for assessment, page in zip(job.answer.assessments, job.pages, strict=True):
         row += 1
@@ -103,7 +107,7 @@ def _write_row(job: OverviewJob, row: int, found: Assessment, page: WrittenPage)
     lines = max(lines_of(reason, 62), lines_of(steps, 56), 1)
     pen.sheet.set_row_pixels(row, 6 + 15 * lines)
     link = f"internal:{quoted(page.sheet)}!A1"
-    pen.sheet.write_url(row, AT["id"], link, pen.formats("link_top"), asked.id)
+    pen.sheet.write_url(row, AT["id"], link, pen.formats("link_cell"), asked.id)
     pen.text(row, AT["characteristic"], asked.name, "cell")
     pen.text(row, AT["unit"], asked.unit, "cell")
     index = found.verdict.index
@@ -126,6 +130,8 @@ def _refer(pen: Pen, row: int, column: int, page: WrittenPage, key: str, number_
     cell: Placed | None = page.cells.get(key)
     if cell is None or cell.value is None:
         pen.text(row, column, NONE, style)
+    elif number_format == decimals.INDEX:
+        write_index(pen, row, column, cell, f"{quoted(page.sheet)}!{cell.ref}", style)
     else:
         pen.formula(row, column, f"{quoted(page.sheet)}!{cell.ref}", cell.value, style, number_format)
 
@@ -151,9 +157,7 @@ def write_finding(
     if finding.cells:
         cell = finding.cells[0]
         if linked:
-            pen.sheet.write_url(
-                row, 1, f"internal:{quoted(cell.sheet)}!{cell.address}", pen.formats("link_top"), str(cell)
-            )
+            pen.link(row, 1, cell, str(cell), "link_cell")
         else:
             pen.text(row, 1, str(cell), "cell")
     pen.sheet.merge_range(row, text_column, row, last, "", pen.formats("cell_words"))

@@ -23,6 +23,10 @@ CHARACTERS_PER_LINE = 56
 WIDE_LINE = 150
 """The same for the whole width of the page."""
 
+FINDING_LINE = 125
+MOST_FINDINGS = 6
+LEVELS = ("stop", "caution", "note")
+
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class WrittenPage:
@@ -172,7 +176,7 @@ def _write_section(workbook: Workbook, job: Job, work: Workings, row: int, numbe
     row += 1
     words = dict(job.assessment.answers).get(key, "")
     if key == "next":
-        return _write_wide(pen, row, words, WIDE_LINE)
+        return _write_findings(job, _write_wide(pen, row, words, WIDE_LINE))
     below = _write_words(pen, row, words)
     below = TABLES[key](job, work, below)
     pictures = _insert_charts(workbook, job, work, row, key)
@@ -193,6 +197,31 @@ def _write_wide(pen: Pen, row: int, words: str, characters: int) -> int:
     pen.sheet.merge_range(row, 0, last, layout.LAST, "", pen.formats("words"))
     pen.text(row, 0, words, "words")
     return last + 1
+
+
+def _write_findings(job: Job, row: int) -> int:
+    """The findings about the characteristic, each with a link to its first cell; gives the row below."""
+    pen, say, findings = job.pen, job.say, job.assessment.findings
+    if not findings:
+        return row
+    pen.text(row, 0, say("page.findings"), "head")
+    for column in range(1, layout.LAST + 1):
+        pen.blank(row, column, "head")
+    order = sorted(findings, key=lambda f: LEVELS.index(f.level))
+    for finding in order[:MOST_FINDINGS]:
+        row += 1
+        lines = lines_of(finding.text, FINDING_LINE)
+        pen.text(row, 0, say(f"level.{finding.level}"), "small_top")
+        cell = job.linked(finding.cells[0]) if finding.cells else None
+        if cell is not None:
+            pen.link(row, layout.LAST, cell, cell.address, "link_small")
+        pen.sheet.merge_range(row, 1, row + lines - 1, layout.LAST - 1, "", pen.formats("words_small"))
+        pen.text(row, 1, finding.text, "words_small")
+        row += lines - 1
+    if len(order) > MOST_FINDINGS:
+        row += 1
+        pen.text(row, 1, say("page.more_findings", count=len(order) - MOST_FINDINGS), "muted")
+    return row + 1
 
 
 def lines_of(words: str, characters: int) -> int:

@@ -4,10 +4,16 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 
+from sheetqc.assessment import Signal
 from sheetqc.sheets import decimals
-from sheetqc.sheets.cells import NONE, Placed
+from sheetqc.sheets.cells import NONE, Pen, Placed, cut
+from sheetqc.sheets.expressions import cut_off, literal
 from sheetqc.sheets.job import Job
 from sheetqc.sheets.workings.build import Workings
+
+MOST_SIGNALS = 4
+MOST_POINTS = 8
+SIGNAL_LETTERS = 50
 
 MOST_MODELS = 11
 """Rows of the candidates' table; further ones stand in the workings."""
@@ -26,7 +32,7 @@ def data_table(job: Job, work: Workings, row: int) -> int:
         ("range", ("minimum", "maximum"), look.value),
         ("mean", ("mean",), look.mean),
         ("s", ("s",), look.spread),
-        ("skewness", ("skewness", "kurtosis"), "0.00"),
+        ("skewness", ("skewness", "kurtosis"), decimals.MOMENT),
     ):
         if all(key in q for key in keys):
             row = _line(job, row, say(f"table.{label}"), [(q[key], number_format) for key in keys])
@@ -46,15 +52,31 @@ def steady_table(job: Job, work: Workings, row: int) -> int:
         within, whole = q["within_s"], q["s"]
         job.pen.formula(row, 3, f"{within.ref}/{whole.ref}", within.number / whole.number, "figure", "0.00")
         row += 1
-    broken = len({signal.rule for signal in found.stability.signals})
-    return _words(job, row, say("table.signals"), str(broken) if broken else say("table.none"))
+    signals = found.stability.signals
+    row = _words(job, row, say("table.signals"), str(len(signals)) if signals else say("table.none"))
+    for signal in signals[:MOST_SIGNALS]:
+        row = _signal(job, row, signal)
+    return row
+
+
+def _signal(job: Job, row: int, signal: Signal) -> int:
+    """A broken rule with its points, and a link to the first cell behind them."""
+    points = ", ".join(str(p) for p in signal.points[:MOST_POINTS]) + ("…" if len(signal.points) > MOST_POINTS else "")
+    text = job.say("table.signal", rule=signal.rule, points=points) if points else signal.rule
+    cell = job.linked(signal.cells[0]) if signal.cells else None
+    if cell is not None:
+        job.pen.link(row, 3, cell, cell.address, "link_small")
+    lines = 1 if len(text) <= SIGNAL_LETTERS else 2
+    job.pen.sheet.merge_range(row, 0, row + lines - 1, 2, "", job.pen.formats("words_muted"))
+    job.pen.text(row, 0, text, "words_muted")
+    return row + lines
 
 
 def shape_table(job: Job, work: Workings, row: int) -> int:
     """The candidates, best weight first; gives the row below."""
     pen, say, candidates, q = job.pen, job.say, work.candidates, work.quantities
     if "a2" in q:
-        row = _line(job, row, say("table.normal"), [(q["a2"], "0.00"), (q["a2_p"], decimals.PROBABILITY)])
+        row = _line(job, row, say("table.normal"), [(q["a2"], decimals.MOMENT), (q["a2_p"], decimals.PROBABILITY)])
     if candidates is None:
         return row
     if "x_low" in q:
@@ -136,10 +158,19 @@ def _words(job: Job, row: int, label: str, words: str) -> int:
 
 
 def _number(job: Job, row: int, column: int, cell: Placed, number_format: str) -> None:
+    """A number of the workings; an index is cut off, not rounded up."""
     if cell.value is None:
         job.pen.text(row, column, NONE, "figure")
+    elif number_format == decimals.INDEX:
+        write_index(job.pen, row, column, cell, cell.ref, "figure")
     else:
         job.pen.formula(row, column, cell.ref, cell.value, "figure", number_format)
+
+
+def write_index(pen: Pen, row: int, column: int, cell: Placed, reference: str, style: str) -> None:
+    """An index as it is shown: cut off after two decimals."""
+    formula = f"IF(ISNUMBER({reference}),{cut_off(reference)},{literal(NONE)})"
+    pen.formula(row, column, formula, cut(cell.number) if cell.is_number else NONE, style, decimals.INDEX)
 
 
 TABLES: Mapping[str, Callable[[Job, Workings, int], int]] = {

@@ -29,6 +29,10 @@ class Words:
         text = self._table[key]
         return text.format(**values) if values else text
 
+    def if_any(self, key: str) -> str:
+        """The text of a key, "" when there is none."""
+        return self._table.get(key, "")
+
     def state(self, state: State) -> str:
         """The word of a verdict."""
         return self(f"state.{state}")

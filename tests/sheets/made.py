@@ -97,6 +97,7 @@ def made_assessment(asked: Asked, index: int) -> Assessment:
         model_in_use=None if chosen is None else chosen.family,
         model_reason="It fits best.",
         indices=Indices(Ppk=estimate),
+        region=tuple(t for f in fits if f.admitted for t in f.region),
         nonconforming=Nonconforming(
             expected=None
             if chosen is None or chosen.expected_ppm is None

@@ -3,7 +3,18 @@
 from __future__ import annotations
 
 from sheetqc.sheets.axis import Axis, axis_around
-from sheetqc.sheets.charts.common import CENTRE, CONTROL, Drawing, dot, numeric, solid
+from sheetqc.sheets.charts.common import (
+    CENTRE,
+    CONTROL,
+    NO_LINE,
+    NO_MARKER,
+    Drawing,
+    dot,
+    font,
+    numeric,
+    solid,
+    texts,
+)
 from sheetqc.sheets.charts.request import ChartRequest
 from sheetqc.sheets.charts.time_order import order_axis
 from sheetqc.sheets.palette import ACCENT, INK
@@ -32,9 +43,29 @@ def _drawn(request: ChartRequest, track: Track, title: str) -> Drawing:
     drawing.line(track.point, track.upper, CONTROL, name=say("chart.control_upper"))
     drawing.line(track.point, track.centre, CENTRE, name=say("chart.centre"))
     drawing.points(track.point, track.value, dot(size=3 if n > 60 else 4), line=solid(ACCENT, 0.5), name=track.title)
+    _draw_labels(request, drawing, track)
+    if track.signal is not None:
+        drawing.points(track.point, track.signal, dot(INK, 7, "x"), name=say("chart.signal"))
     drawing.points(track.point, track.outside, dot(INK, 7, "diamond"), name=say("chart.outside"))
-    drawing.axes(order_axis(n), numeric(_axis(track)))
+    drawing.axes(order_axis(int(track.point.at(n - 1).number)), numeric(_axis(track)))
     return drawing
+
+
+def _draw_labels(request: ChartRequest, drawing: Drawing, track: Track) -> None:
+    """Names of the three lines, right of the last point."""
+    last, say = len(track.value.values) - 1, request.say
+    place = track.point.at(last).number + 1.0
+    ends = [column.at(last) for column in (track.lower, track.centre, track.upper)]
+    line = request.workings.lines.anchors(track.title, place, ends)
+    words = [say(f"chart.control.{key}") for key in ("lower", "centre", "upper")]
+    drawing.points(
+        line.x,
+        line.y,
+        NO_MARKER,
+        line=NO_LINE,
+        name=say("chart.names"),
+        data_labels=texts(words, position="right", look=font(8, ACCENT)),
+    )
 
 
 def _axis(track: Track) -> Axis:

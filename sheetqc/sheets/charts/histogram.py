@@ -9,6 +9,9 @@ from sheetqc.sheets.palette import ACCENT, BAR, INK
 
 POINTS_PER_PIXEL = 0.75
 
+OVERLAP = 1.6
+"""Pixels by which stripes overlap, lest rounding leaves gaps."""
+
 
 def histogram(request: ChartRequest) -> Drawing | None:
     """The chart; None when the values have no spread.
@@ -21,8 +24,9 @@ def histogram(request: ChartRequest) -> Drawing | None:
         return None
     drawing = Drawing(request.workbook, request.sheet, say("chart.histogram", unit=request.unit_in_words), request.rows)
     drawing.place(right=14, top=40)
-    stripe = solid(BAR, (bars.stripe + 0.6) * POINTS_PER_PIXEL)
+    stripe = solid(BAR, (bars.stripe + OVERLAP) * POINTS_PER_PIXEL)
     top = _top(request)
+    _draw_curve(request, drawing)
     drawing.points(
         bars.stripe_x,
         bars.stripe_y,
@@ -32,8 +36,7 @@ def histogram(request: ChartRequest) -> Drawing | None:
         y_error_bars={"type": "percentage", "value": 100, "direction": "minus", "end_style": 0, "line": stripe},
     )
     drawing.line(bars.outline_x, bars.outline_y, solid("#7FA9BA", 0.75), name=say("chart.bars"))
-    if work.curve is not None:
-        drawing.line(work.curve.x, work.curve.share, solid(ACCENT, 2.0), name=say("chart.model"))
+    _draw_curve(request, drawing)
     for key, cell in (("lower", work.inputs.lower), ("upper", work.inputs.upper)):
         line = work.lines.upright(say(f"chart.{key}"), cell, axis, 0.0, top.maximum)
         label = label_at_end(say(f"chart.{key}"), position="above")
@@ -41,6 +44,13 @@ def histogram(request: ChartRequest) -> Drawing | None:
     _draw_quantiles(request, drawing, axis, top)
     drawing.axes(numeric(axis, grid=False), numeric(top, num_format="0%"))
     return drawing
+
+
+def _draw_curve(request: ChartRequest, drawing: Drawing) -> None:
+    """The curve of the model in use; drawn first and last, since spreadsheets differ in which series lies on top."""
+    curve = request.workings.curve
+    if curve is not None:
+        drawing.line(curve.x, curve.share, solid(ACCENT, 2.0), name=request.say("chart.model"))
 
 
 def _draw_quantiles(request: ChartRequest, drawing: Drawing, axis: Axis, top: Axis) -> None:

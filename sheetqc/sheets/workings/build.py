@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from sheetqc.sheets import layout
 from sheetqc.sheets.axis import Axis
@@ -11,7 +11,7 @@ from sheetqc.sheets.workings.band import Band, write_band
 from sheetqc.sheets.workings.bars import Bars, write_bars
 from sheetqc.sheets.workings.candidates import Candidates, write_candidates
 from sheetqc.sheets.workings.capability import add_capability, add_observed, add_within
-from sheetqc.sheets.workings.control import Track, write_track
+from sheetqc.sheets.workings.control import Track, write_control
 from sheetqc.sheets.workings.curve import Curve, write_curve
 from sheetqc.sheets.workings.ground import Ground
 from sheetqc.sheets.workings.index import limits_of
@@ -64,45 +64,39 @@ def write_workings(job: Job) -> Workings:
         regions = write_regions(job, ground)
         candidates = write_candidates(job, ground, limits, regions.own)
     if candidates is not None:
-        add_capability(job, quantities, inputs, limits, candidates, regions.admitted)
+        add_capability(job, quantities, inputs, limits, candidates, regions.whole)
+    control = write_control(job, ground, quantities, values)
     add_within(job, quantities, limits)
     add_observed(job, quantities, limits, values)
     add_verdict(job, quantities, inputs)
     add_status(job, quantities, inputs, limits)
-    return _with_pictures(job, ground, inputs, quantities, values, candidates, lines)
-
-
-def _with_pictures(
-    job: Job,
-    ground: Ground,
-    inputs: Inputs,
-    quantities: Quantities,
-    values: Values,
-    candidates: Candidates | None,
-    lines: Lines,
-) -> Workings:
-    """The blocks that charts draw from."""
-    stability = job.assessment.stability
-    axis = value_axis(job)
-    bars = write_bars(job, ground, values, axis, AXIS_PIXELS) if job.has_spread else None
-    curve = band = intervals = None
-    if candidates is not None and bars is not None:
-        curve = write_curve(job, ground, candidates, quantities["model"], axis, bars.width)
-        band = write_band(job, ground, values, curve, axis)
-        intervals = write_intervals(job, ground, candidates, quantities)
-    location, spread = stability.location, stability.spread
-    return Workings(
+    pictures = Workings(
         inputs=inputs,
         quantities=quantities,
         values=values,
-        axis=axis,
         candidates=candidates,
+        location=control.location,
+        spread=control.spread,
+        lines=lines,
+    )
+    return _with_pictures(job, ground, pictures, values)
+
+
+def _with_pictures(job: Job, ground: Ground, work: Workings, values: Values) -> Workings:
+    """The same with the blocks that charts draw from."""
+    axis = value_axis(job)
+    if not job.has_spread:
+        return replace(work, axis=axis)
+    bars = write_bars(job, ground, values, axis, AXIS_PIXELS)
+    if work.candidates is None:
+        return replace(work, axis=axis, bars=bars)
+    curve = write_curve(job, ground, work.candidates, work.quantities["model"], axis, bars.width)
+    return replace(
+        work,
+        axis=axis,
         bars=bars,
         curve=curve,
-        band=band,
-        location=None if location is None else write_track(job, ground, location, values, place=True),
-        spread=None if spread is None else write_track(job, ground, spread, values, place=False),
-        intervals=intervals,
+        band=write_band(job, ground, values, curve, axis),
+        intervals=write_intervals(job, ground, work.candidates, work.quantities),
         index_axis=index_axis(job),
-        lines=lines,
     )

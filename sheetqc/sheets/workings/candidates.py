@@ -56,8 +56,8 @@ class Candidates:
 
 
 def write_candidates(job: Job, ground: Ground, limits: Limits, regions: Sequence[Region | None]) -> Candidates | None:
-    """Writes the candidates in the order of the assessment; `regions` runs in step with them."""
-    fits = job.assessment.models
+    """Writes the candidates best weight first; `regions` runs in step with them."""
+    fits = job.models
     if not fits:
         return None
     first = ground.block(job.say("work.candidates"), tuple(job.say(f"work.candidates.{k}") for k in HEADS), WIDTHS)

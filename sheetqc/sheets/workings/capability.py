@@ -22,7 +22,7 @@ _NO = literal(NONE)
 
 
 def add_capability(
-    job: Job, quantities: Quantities, inputs: Inputs, limits: Limits, candidates: Candidates, admitted: Region | None
+    job: Job, quantities: Quantities, inputs: Inputs, limits: Limits, candidates: Candidates, whole: Region | None
 ) -> None:
     """Adds the place of the model in use, its quantiles, indices with bounds and expected rates."""
     if inputs.model is None:
@@ -41,11 +41,11 @@ def add_capability(
     chosen("x_high", candidates.high, look.mean, "X99.865")
     found = job.assessment.indices
     estimate = chosen("Pp", candidates.pp, INDEX, "Pp", _part(found.Pp, "estimate"))
-    _bound(quantities, "Pp_lower", estimate, extreme_pp(limits, admitted, "MIN") if admitted else None, found.Pp)
-    _bound(quantities, "Pp_upper", estimate, extreme_pp(limits, admitted, "MAX") if admitted else None, found.Pp)
+    _bound(quantities, "Pp_lower", estimate, extreme_pp(limits, whole, "MIN") if whole else None, found.Pp)
+    _bound(quantities, "Pp_upper", estimate, extreme_pp(limits, whole, "MAX") if whole else None, found.Pp)
     estimate = chosen("Ppk", candidates.ppk, INDEX, "Ppk", _part(found.Ppk, "estimate"))
-    _bound(quantities, "Ppk_lower", estimate, least_ppk(limits, admitted) if admitted else None, found.Ppk)
-    _bound(quantities, "Ppk_upper", estimate, greatest_ppk(limits, admitted) if admitted else None, found.Ppk)
+    _bound(quantities, "Ppk_lower", estimate, least_ppk(limits, whole) if whole else None, found.Ppk)
+    _bound(quantities, "Ppk_upper", estimate, greatest_ppk(limits, whole) if whole else None, found.Ppk)
     chosen("below", candidates.below, RATE, "Expected_ppm_below")
     chosen("above", candidates.above, RATE, "Expected_ppm_above")
     chosen("total", candidates.total, RATE, "Expected_ppm")
@@ -76,10 +76,9 @@ def _bound(
 
 def add_within(job: Job, quantities: Quantities, limits: Limits) -> None:
     """Adds Cp and Cpk, from the spread within subgroups and the normal model."""
-    within = job.assessment.stability.within_s
-    if within is None or within <= 0 or "mean" not in quantities:
+    if "within_s" not in quantities or "mean" not in quantities or quantities["within_s"].number <= 0:
         return
-    s = quantities.constant("within_s", within, job.decimals.spread, name="s_within")
+    s, within = quantities["within_s"], quantities["within_s"].number
     mean, lower, upper = quantities["mean"], limits.lower, limits.upper
     found = job.assessment.indices
     both = f"IF({limits.count}=2,({upper.ref}-{lower.ref})/(6*{s.ref}),{_NO})"

@@ -4,11 +4,16 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from sheetqc.assessment import ModelFit
 from sheetqc.sheets.cells import NA, Column, Placed
 from sheetqc.sheets.job import Job
 from sheetqc.sheets.workings.candidates import Candidates
 from sheetqc.sheets.workings.ground import FIRST, Ground
 from sheetqc.sheets.workings.quantities import Quantities
+from sheetqc.stats.families import family
+
+MOST = 11
+"""Models that the picture has room for."""
 
 HEADS = ("label", "height", "index", "less", "more", "in_use")
 
@@ -36,8 +41,8 @@ class Intervals:
 def write_intervals(job: Job, ground: Ground, candidates: Candidates, quantities: Quantities) -> Intervals:
     """Writes the rows. Where there is no index, a point at 0 is not drawn, since its height is missing."""
     column = ground.block(job.say("work.intervals"), tuple(job.say(f"work.intervals.{k}") for k in HEADS), (130,))
-    pen, count = job.pen, candidates.count
-    labels = (job.say("chart.candidates.answer"), *(str(t) for t in candidates.title.values))
+    pen, count = job.pen, min(candidates.count, MOST)
+    labels = (job.say("chart.candidates.answer"), *(_name(job, f) for f in candidates.fits[:count]))
     for row, label in enumerate(labels):
         pen.text(FIRST + row, column, label, "small")
     index = [quantities["Ppk"], *(candidates.ppk.at(i) for i in range(count))]
@@ -63,6 +68,11 @@ def write_intervals(job: Job, ground: Ground, candidates: Candidates, quantities
             [NA] + [heights[i + 1] if selector.number == i + 1 else NA for i in range(count)],
         ),
     )
+
+
+def _name(job: Job, fit: ModelFit) -> str:
+    """The title of a model; a shorter one where there is one."""
+    return job.say.if_any(f"short.{fit.family}") or family(fit.family).title
 
 
 def _or_zero(cell: Placed) -> float:

@@ -56,6 +56,14 @@ class Lines:
         value = cell.number if cell.is_number else NA
         return self._line(label, ([constant(first), constant(last)], [first, last]), ([y, y], [value, value]))
 
+    def anchors(self, label: str, x: float, cells: list[Placed]) -> Line:
+        """Points at one place, each at the height that a cell holds: where labels are hung."""
+        return self._line(
+            label,
+            ([constant(x)] * len(cells), [x] * len(cells)),
+            ([cell.ref for cell in cells], [cell.number for cell in cells]),
+        )
+
     def constants(self, label: str, values: list[float]) -> Column:
         """Places below one another that do not move."""
         pen, row = self._job.pen, self._row
@@ -71,7 +79,7 @@ class Lines:
     ) -> Line:
         pen, row = self._job.pen, self._row
         pen.text(row, self._column, label, "small")
-        self._row += 2
+        self._row += len(x[0])
         return Line(
             x=pen.formulas(row, self._column + 1, *x),
             y=pen.formulas(row, self._column + 2, *y),

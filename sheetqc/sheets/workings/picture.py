@@ -14,7 +14,7 @@ def value_axis(job: Job) -> Axis:
     if model is not None:
         others += [model.quantiles.low, model.quantiles.high]
     floor = 0.0 if min(job.values) >= 0 else None
-    return axis_around(list(job.values), others, floor=floor)
+    return axis_around(list(job.values), others, pieces=8, floor=floor)
 
 
 def index_axis(job: Job) -> Axis | None:

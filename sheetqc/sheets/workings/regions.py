@@ -13,27 +13,25 @@ HEADS = ("model", "low", "median", "high")
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Regions:
-    """The region of every candidate (None without one), in their order, and that of all admitted ones together."""
+    """The region of everything admitted, and that of every candidate alone; None where there is none."""
 
+    whole: Region | None
     own: tuple[Region | None, ...]
-    admitted: Region | None
 
 
 def write_regions(job: Job, ground: Ground) -> Regions:
-    """Writes the triples of every candidate, the admitted ones first, so that their rows stand together."""
-    fits = job.assessment.models
-    order = sorted(range(len(fits)), key=lambda i: not fits[i].admitted)
-    rows = [(i + 1, *triple) for i in order for triple in fits[i].region]
+    """Writes the triples: those of the answer first, marked 0, then those of each candidate by its number."""
+    found = job.assessment
+    parts = [found.region, *(fit.region for fit in job.models)]
+    rows = [(place, *triple) for place, part in enumerate(parts) for triple in part]
     if not rows:
-        return Regions(own=(None,) * len(fits), admitted=None)
+        return Regions(whole=None, own=(None,) * len(job.models))
     first = ground.block(job.say("work.region"), tuple(job.say(f"work.region.{k}") for k in HEADS))
     columns = [job.pen.numbers(FIRST, first + c, [row[c] for row in rows]) for c in range(4)]
-    whole = Region(low=columns[1], median=columns[2], high=columns[3])
-    own: dict[int, Region | None] = {}
-    at = admitted = 0
-    for i in order:
-        count = len(fits[i].region)
-        own[i] = whole.part(at, count) if count else None
-        at += count
-        admitted += count if fits[i].admitted else 0
-    return Regions(own=tuple(own[i] for i in range(len(fits))), admitted=whole.part(0, admitted) if admitted else None)
+    every = Region(low=columns[1], median=columns[2], high=columns[3])
+    regions: list[Region | None] = []
+    at = 0
+    for part in parts:
+        regions.append(every.part(at, len(part)) if part else None)
+        at += len(part)
+    return Regions(whole=regions[0], own=tuple(regions[1:]))

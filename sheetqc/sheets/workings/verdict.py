@@ -3,8 +3,8 @@
 from __future__ import annotations
 
 from sheetqc.assessment import State, Verdict
-from sheetqc.sheets.cells import NONE, Placed
-from sheetqc.sheets.expressions import first_true, literal
+from sheetqc.sheets.cells import NONE, Placed, cut
+from sheetqc.sheets.expressions import cut_off, first_true, literal
 from sheetqc.sheets.job import Job
 from sheetqc.sheets.words import Words
 from sheetqc.sheets.workings.index import Limits
@@ -91,13 +91,8 @@ def _add_line(job: Job, quantities: Quantities, inputs: Inputs) -> None:
 
 def _two_decimals(cell: Placed) -> tuple[str, str]:
     """A number cut off after two decimals: 1.329 is not 1.33."""
-    formula = f"IF(ISNUMBER({cell.ref}),FIXED(FLOOR({cell.ref}*100+1E-9,1)/100,2,TRUE),{literal(NONE)})"
-    return formula, say_number(cell.number) if cell.is_number else NONE
-
-
-def say_number(value: float) -> str:
-    """What the formula gives: two decimals, cut off."""
-    return f"{(value * 100 + 1e-9) // 1 / 100:.2f}"
+    formula = f"IF(ISNUMBER({cell.ref}),FIXED({cut_off(cell.ref)},2,TRUE),{literal(NONE)})"
+    return formula, f"{cut(cell.number):.2f}" if cell.is_number else NONE
 
 
 def add_status(job: Job, quantities: Quantities, inputs: Inputs, limits: Limits) -> None:
