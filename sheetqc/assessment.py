@@ -82,9 +82,8 @@ class ModelFit:
 
     `parameters` are (name, value) in the order of the family. `weight` is its Akaike weight among the candidates.
     `objection` says in words why it cannot be used, "" when the data do not object.
-    `admitted` tells whether it takes part in the bound. `region` holds quantile triples (X0.135, X50, X99.865) of
-    parameter values on the border of its likelihood region: the index bound is the extreme index over them, so that a
-    spreadsheet can follow a moved limit.
+    `admitted` tells whether it takes part in the bound. `region` holds quantile triples (X0.135, X50, X99.865) on the
+    border of its own likelihood region: `ppk_lower` and `ppk_upper` are the extreme indices over them.
     """
 
     family: str
@@ -223,6 +222,10 @@ class Assessment:
     gauge: GaugeResult | None = None
     verdict: Verdict
     findings: tuple[Finding, ...] = ()
+    region: tuple[tuple[float, float, float], ...] = ()
+    """Quantile triples (X0.135, X50, X99.865) of everything the values leave possible, over all admitted candidates and
+    guard shapes: the bounds of Ppk and Pp are the extreme indices over them, so that a spreadsheet can follow a moved
+    limit."""
     answers: tuple[tuple[str, str], ...] = ()
     """The chain of questions answered in words: (question key, sentence); keys: data, steady, shape, capable, next."""
 

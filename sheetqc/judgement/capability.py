@@ -8,16 +8,14 @@ import numpy as np
 from numpy.typing import NDArray
 
 from sheetqc.assessment import Estimate, ExpectedRate, Indices, ModelFit, Nonconforming, Observed, Quantiles, Test
-from sheetqc.judgement.shape import Candidate, Shape
+from sheetqc.judgement.shape import TAIL, Candidate, Shape
 from sheetqc.judgement.steadiness import Steadiness
 from sheetqc.stats.bounds import pp_bounds, ppk_bounds, rate_bounds
-from sheetqc.stats.capability import quantile_capability, within_capability
+from sheetqc.stats.bounds.essential import essential_triples
 from sheetqc.stats.families import family
+from sheetqc.stats.indices import Bounded, cpm, indices_of_spread, quantile_capability
 from sheetqc.stats.intervals import proportion_interval
 from sheetqc.study import Limits
-
-TAIL = 0.00135
-"""Probability beyond each of the outer quantiles of ISO 22514-2."""
 
 MILLION = 1e6
 
@@ -29,8 +27,9 @@ class Capability:
     """Every candidate as a record, the indices and the nonconforming rates."""
 
     models: tuple[ModelFit, ...]
-    indices: Indices
-    nonconforming: Nonconforming
+    indices: Indices = Indices()
+    nonconforming: Nonconforming = Nonconforming()
+    region: tuple[tuple[float, float, float], ...] = ()
 
 
 def capability_of(
@@ -49,7 +48,7 @@ def capability_of(
     models = tuple(_model_fit(c, shape, limits) for c in shape.candidates)
     in_use = next((m for m in models if m.family == shape.in_use), None)
     if in_use is None or (limits.lower is None and limits.upper is None):
-        return Capability(models=models, indices=Indices(), nonconforming=Nonconforming())
+        return Capability(models=models)
     return Capability(
         models=models,
         indices=_indices(values, limits, shape, in_use, steadiness, confidence),
@@ -57,6 +56,7 @@ def capability_of(
             observed=observed(values, limits, confidence),
             expected=_expected(in_use, shape, limits),
         ),
+        region=carried(shape.union.triples, limits),
     )
 
 
@@ -83,8 +83,14 @@ def _model_fit(candidate: Candidate, shape: Shape, limits: Limits) -> ModelFit:
         expected_ppm=expected_rate(candidate, limits),
         objection=candidate.objection,
         admitted=fit.admitted,
-        region=tuple((float(a), float(b), float(c)) for a, b, c in fit.triples),
+        region=carried(fit.own_triples, limits),
     )
+
+
+def carried(triples: Values, limits: Limits) -> tuple[tuple[float, float, float], ...]:
+    """The triples that a spreadsheet needs to bound the index for any limits."""
+    few = essential_triples(triples, limits.lower, limits.upper)
+    return tuple((float(a), float(b), float(c)) for a, b, c in few)
 
 
 def expected_rate(candidate: Candidate, limits: Limits) -> ExpectedRate | None:
@@ -139,20 +145,16 @@ def _indices(
 ) -> Indices:
     ppk = ppk_bounds(shape.union, limits.lower, limits.upper)
     pp = pp_bounds(shape.union, limits.lower, limits.upper)
-    within = within_capability(
-        float(np.mean(values)),
-        steadiness.within_s,
-        steadiness.within_degrees,
-        len(values),
-        lower=limits.lower,
-        upper=limits.upper,
-        nominal=limits.nominal,
-        confidence=confidence,
-    )
+    mean, s, n = float(np.mean(values)), float(np.std(values, ddof=1)), len(values)
+    within = indices_of_spread(mean, steadiness.within, n, limits.lower, limits.upper, confidence, sides=1)
     return Indices(
         Pp=None if in_use.pp is None else _around(in_use.pp, pp.lower, pp.upper),
         Ppk=_around(in_use.ppk, ppk.lower, ppk.upper),
-        Cp=within.Cp,
-        Cpk=within.Cpk,
-        Cpm=within.Cpm,
+        Cp=_estimate(within.spread),
+        Cpk=_estimate(within.nearer),
+        Cpm=_estimate(cpm(mean, s, n, limits.lower, limits.upper, limits.nominal, confidence, sides=1)),
     )
+
+
+def _estimate(index: Bounded | None) -> Estimate | None:
+    return None if index is None else Estimate(estimate=index.estimate, lower=index.lower, upper=index.upper)

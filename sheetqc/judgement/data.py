@@ -173,11 +173,14 @@ def _findings(asked: Characteristic, sample: Sample, values: NDArray[np.float64]
 
 def _bound_findings(asked: Characteristic, sample: Sample, values: NDArray[np.float64]) -> Iterator[Finding]:
     limits = asked.limits
+    nothing = np.zeros(len(values), dtype=bool)
+    below = nothing if limits.natural_lower is None else values < limits.natural_lower
+    above = nothing if limits.natural_upper is None else values > limits.natural_upper
     for bound, beyond, words in (
-        (limits.natural_lower, lambda b: values < b, "below the natural lower bound"),
-        (limits.natural_upper, lambda b: values > b, "above the natural upper bound"),
+        (limits.natural_lower, below, "below the natural lower bound"),
+        (limits.natural_upper, above, "above the natural upper bound"),
     ):
-        places = np.flatnonzero(beyond(bound)) if bound is not None else []
+        places = np.flatnonzero(beyond)
         if len(places):
             yield Finding(
                 code="beyond-natural-bound",

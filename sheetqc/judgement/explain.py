@@ -17,19 +17,17 @@ from sheetqc.judgement.terms import Terms
 from sheetqc.judgement.wording import index as to_two_decimals
 from sheetqc.judgement.wording import number, percent, plural, ppm
 from sheetqc.stats.families import family
-from sheetqc.study import Characteristic, Sample
+from sheetqc.study import Characteristic
 
 Values = NDArray[np.float64]
 
 
-def answers(
-    data: DataView, steady: str, shape: Shape | None, capable: str, verdict: Verdict
-) -> tuple[tuple[str, str], ...]:
+def answers(data: DataView, steady: str, shape: str, capable: str, verdict: Verdict) -> tuple[tuple[str, str], ...]:
     """The chain of questions with their answers, each a few sentences."""
     return (
         ("data", data.answer),
         ("steady", steady),
-        ("shape", shape.reason if shape else "Nothing can be said of the shape."),
+        ("shape", shape),
         ("capable", capable),
         ("next", " ".join(verdict.next_steps) or "Nothing more is asked for."),
     )
@@ -75,8 +73,8 @@ def _reach(values: Values, asked: Characteristic) -> str:
     if gap <= 0:
         return ""
     return (
-        f"The {side} limit lies {number(gap, 2)} standard deviations beyond the {end} value measured: what happens there "
-        "is the model's word, not the data's."
+        f"The {side} limit lies {number(gap, 2)} standard deviations beyond the {end} value measured: what happens "
+        "there is the model's word, not the data's."
     )
 
 
@@ -85,17 +83,15 @@ def next_steps(estimate: Estimate | None, state: str, terms: Terms, count: int) 
     if estimate is None or estimate.estimate is None or state in ("shown", "no verdict"):
         return ("Keep the process under observation and repeat the study when something changes.",)
     if state == "likely":
-        return (
-            _more_values(estimate, terms, count),
-            "Declaring the kind of characteristic, where it is not, narrows the models and costs nothing.",
-        )
+        return (_more_values(estimate, terms, count),)
     if state == "doubtful":
         return (
             "Reduce the spread or move the mean away from the nearer limit, then repeat the study; more values alone "
             "are unlikely to show the requirement.",
         )
     return (
-        "The process must be improved, or parts sorted, until the requirement can be met; agree on it with the customer.",
+        "Improve the process before the requirement can be met; until then agree with the customer how the parts are "
+        "to be sorted.",
     )
 
 
@@ -116,9 +112,7 @@ def _more_values(estimate: Estimate, terms: Terms, count: int) -> str:
     )
 
 
-def findings_of(
-    sample: Sample, shape: Shape, capability: Capability, terms: Terms, asked: Characteristic
-) -> Iterator[Finding]:
+def findings_of(shape: Shape, capability: Capability, asked: Characteristic) -> Iterator[Finding]:
     """Findings that come of models and rates taken together."""
     if shape.prior == "open" and asked.kind == "":
         yield Finding(
@@ -160,10 +154,11 @@ def _contradiction(found: Nonconforming) -> Iterator[Finding]:
         yield Finding(
             code="observed-against-expected",
             level="caution",
-            text=f"Observed and expected nonconforming contradict each other: {_observed(seen)}, while the model in use "
-            f"expects {ppm(expected.estimate)}. Trust the count; the model does not describe this tail.",
+            text=f"Observed and expected nonconforming contradict each other: {_observed(seen)}, while the model in "
+            f"use expects {ppm(expected.estimate)}. Trust the count; the model does not describe this tail.",
         )
 
 
 def _observed(seen: Observed) -> str:
-    return f"{seen.count} of {seen.of} values outside (between {percent(seen.lower / 1e6)} and {percent(seen.upper / 1e6)})"
+    between = f"between {percent(seen.lower / 1e6)} and {percent(seen.upper / 1e6)}"
+    return f"{seen.count} of {seen.of} values outside ({between})"

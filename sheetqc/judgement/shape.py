@@ -8,9 +8,10 @@ from typing import Literal
 
 import numpy as np
 from numpy.typing import NDArray
+from scipy.special import ndtri
 
 from sheetqc import vocabulary
-from sheetqc.finding import Cell, Finding
+from sheetqc.finding import Cell
 from sheetqc.judgement.condition import Condition
 from sheetqc.judgement.wording import listed, percent, plural, probability
 from sheetqc.stats.bounds import ModelUnion, UnionFit, model_union
@@ -21,8 +22,29 @@ from sheetqc.study import Characteristic
 Prior = Literal["open", "kind", "model"]
 Values = NDArray[np.float64]
 
+TAIL = 0.00135
+"""Probability beyond each of the outer quantiles of ISO 22514-2."""
+
 OBJECTION = 0.01
 """Anderson-Darling probability below which the data object to a model."""
+
+CONSIDERED = (
+    "normal",
+    "lognormal",
+    "weibull",
+    "gamma",
+    "exponential",
+    "folded_normal",
+    "rayleigh",
+    "logistic",
+    "loglogistic",
+    "gumbel_max",
+    "gumbel_min",
+    "lognormal_threshold",
+    "weibull_threshold",
+    "gamma_threshold",
+)
+"""Families considered where nothing is known beforehand, the simple ones first."""
 
 CLOSE = 2.0
 """Difference in AICc up to which a model is about as good as the best (Burnham & Anderson 2002, section 2.6)."""
@@ -45,10 +67,23 @@ class Shape:
     prior: Prior
     union: ModelUnion
     candidates: tuple[Candidate, ...]
-    in_use: str | None
+    in_use: str
     reason: str
     conditions: tuple[Condition, ...] = ()
-    findings: tuple[Finding, ...] = ()
+
+    @property
+    def fit_in_use(self) -> UnionFit:
+        """The fit of the model in use."""
+        return next(c.fit for c in self.candidates if c.fit.family == self.in_use)
+
+
+def normal_scores(values: Values, fit: UnionFit) -> Values:
+    """Standard normal values as probable as each value under a fit; shape (n,)."""
+    member = family(fit.family)
+    below, above = member.cdf(values, fit.theta), member.survival(values, fit.theta)
+    tiny = np.finfo(float).tiny
+    scores = np.where(below < 0.5, ndtri(np.maximum(below, tiny)), -ndtri(np.maximum(above, tiny)))
+    return np.asarray(scores, dtype=float)
 
 
 def shape_of(asked: Characteristic, values: Values, step: float | None, confidence: float) -> Shape:
@@ -85,8 +120,7 @@ def candidate_names(asked: Characteristic) -> tuple[Prior, tuple[str, ...]]:
     if asked.model in known:
         return "model", (asked.model,)
     kind = vocabulary.kind_named(asked.kind)
-    narrowed = () if kind is None else tuple(name for name in kind.families if name in known)
-    return ("kind", narrowed) if narrowed else ("open", known)
+    return ("open", CONSIDERED) if kind is None else ("kind", kind.families)
 
 
 FINE = 10.0

@@ -11,6 +11,21 @@ from typing import Any
 
 _EXPORTS = {
     # name: module
+    "capability": "sheetqc.stats.indices",
+    "effective_count": "sheetqc.stats.serial",
+    "von_neumann": "sheetqc.stats.serial",
+    "linear_trend": "sheetqc.stats.serial",
+    "runs_up_and_down": "sheetqc.stats.serial",
+    "runs_test": "sheetqc.stats.serial",
+    "brown_forsythe": "sheetqc.stats.comparison",
+    "one_way_anova": "sheetqc.stats.comparison",
+    "control_chart_constants": "sheetqc.stats.constants",
+    "quantile_capability": "sheetqc.stats.indices",
+    "proportion_interval": "sheetqc.stats.intervals",
+    "lag_one_correlation": "sheetqc.stats.descriptive",
+    "describe": "sheetqc.stats.descriptive",
+    "ppcc": "sheetqc.stats.normality",
+    "shapiro_wilk": "sheetqc.stats.normality",
     "DataError": "sheetqc.stats.errors",
     "Fit": "sheetqc.stats.fitting",
     "a_squared": "sheetqc.stats.goodness",
