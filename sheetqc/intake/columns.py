@@ -10,8 +10,8 @@ from sheetqc.intake.blocks import Block
 from sheetqc.intake.content import number_in
 from sheetqc.intake.doubts import Doubts, listed, places
 from sheetqc.intake.heading import HeadingRow
-from sheetqc.intake.naming import Names, without_unit
-from sheetqc.intake.units import is_unit
+from sheetqc.intake.naming import Names
+from sheetqc.intake.units import is_unit, unit_key
 
 
 @dataclass(slots=True)
@@ -84,9 +84,9 @@ def _streams(columns: Columns, headings: HeadingRow) -> None:
             word, _, label = headings.lower.get(column, "").strip().rpartition(" ")
             if len(own) > 1 and word and vocabulary.field_of("measurements", word) == "stream":
                 columns.streams[column] = label
-            lower = headings.lower.get(column, "")
-            if is_unit(lower):
-                columns.units[column] = without_unit(lower)[0].strip("[]() ")
+            unit = headings.units.get(column) or headings.lower.get(column, "")
+            if is_unit(unit):
+                columns.units[column] = unit_key(unit)
 
 
 def _tell_unknown(headings: HeadingRow, unknown: list[int], doubts: Doubts) -> None:

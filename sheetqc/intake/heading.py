@@ -8,25 +8,33 @@ from dataclasses import dataclass
 from sheetqc.finding import Cell
 from sheetqc.intake.blocks import Block
 from sheetqc.intake.content import is_text
+from sheetqc.intake.units import is_unit, unit_key
 
+_WITH_UNITS = ("measurements", "gauge")
 _LOOKED_AT = 8
 """Rows below a tag in which its headings are looked for."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class HeadingRow:
-    """The headings of a block: `first` and `last` row, the text of each column, and the lower text of two rows."""
+    """The headings of a block.
+
+    `first` and `last` row, the text of each column, the lower text of two rows, and
+    the units that a row below them gives.
+    """
 
     block: Block
     first: int
     last: int
     texts: dict[int, str]
     lower: dict[int, str]
+    units: dict[int, str]
 
     def cell(self, column: int) -> Cell:
         """The cell a column's heading stands in."""
-        own = self.block.sheet.text(self.last, column)
-        return self.block.sheet.cell(self.last if own else self.first, column)
+        row = self.last - bool(self.units)
+        own = self.block.sheet.text(row, column)
+        return self.block.sheet.cell(row if own else self.first, column)
 
     def data_rows(self) -> list[int]:
         """Numbers of the filled rows below the headings."""
@@ -50,9 +58,23 @@ def heading_row(block: Block, known: Callable[[str], bool]) -> HeadingRow | None
         lower = _texts(block, following) if following is not None and following == row + 1 else {}
         if following is not None and _completes(block, row, following, texts, lower, known):
             joined = {c: _joined(texts.get(c, ""), lower.get(c, ""), known) for c in {*texts, *lower}}
-            return HeadingRow(block=block, first=row, last=following, texts=joined, lower=lower)
-        return HeadingRow(block=block, first=row, last=row, texts=texts, lower={})
+            return _found(block, row, following, joined, lower)
+        return _found(block, row, row, texts, {})
     return None
+
+
+def _found(block: Block, first: int, last: int, texts: dict[int, str], lower: dict[int, str]) -> HeadingRow:
+    """The headings, with a row of nothing but units directly below them taken in."""
+    units: dict[int, str] = {}
+    below = block.columns(last + 1) if last < block.bottom else []
+    if block.name in _WITH_UNITS and below and all(_is_unit_cell(block, last + 1, c) for c in below):
+        units = {c: unit_key(block.sheet.text(last + 1, c)) for c in below}
+        last += 1
+    return HeadingRow(block=block, first=first, last=last, texts=texts, lower=lower, units=units)
+
+
+def _is_unit_cell(block: Block, row: int, column: int) -> bool:
+    return is_text(block.sheet.at(row, column)) and is_unit(block.sheet.text(row, column))
 
 
 def _texts(block: Block, row: int) -> dict[int, str]:

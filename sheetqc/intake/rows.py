@@ -41,8 +41,6 @@ def sorted_rows(headings: HeadingRow, columns: Columns, doubts: Doubts) -> list[
     for number in headings.data_rows():
         if _repeats(headings, number):
             repeated.append(_first_cell(headings, number))
-        elif _is_units(headings, number):
-            continue
         elif (cell := _summary_cell(headings, columns, number)) is not None:
             summaries.append(cell)
         elif _holds_something(columns, number):
@@ -81,14 +79,6 @@ def _repeats(headings: HeadingRow, row: int) -> bool:
         return False
     same = sum(1 for c in columns if vocabulary.key(sheet.text(row, c)) == vocabulary.key(headings.texts.get(c, "")))
     return 2 * same > len(columns)
-
-
-def _is_units(headings: HeadingRow, row: int) -> bool:
-    from sheetqc.intake.units import is_unit
-
-    sheet = headings.block.sheet
-    columns = headings.block.columns(row)
-    return row == headings.last + 1 and all(is_text(sheet.at(row, c)) and is_unit(sheet.text(row, c)) for c in columns)
 
 
 def _summary_cell(headings: HeadingRow, columns: Columns, row: int) -> Cell | None:

@@ -13,14 +13,14 @@ from sheetqc.sheets.blank.plan import Plan
 
 _WIDTHS = {
     "id": 11,
-    "name": 25,
+    "name": 22,
     "unit": 7,
     "kind": 19,
     "model": 18,
     "requirement": 12.5,
     "critical_class": 11,
     "claimed_index": 9,
-    "note": 28,
+    "note": 22,
 }
 _NEEDED = ("id", "lower", "upper")
 
@@ -34,6 +34,8 @@ def fill(sheet: Any, look: Look, plan: Plan) -> None:
     sheet.write(1, 0, "Needed: an Id and at least one limit. Select a heading to see what belongs there.", look.quiet)
     sheet.write(2, 0, "qc:characteristics", look.tag)
     sheet.set_row(3, 42)
+    for row in range(plan.first_characteristic, plan.last_characteristic + 1):
+        sheet.set_row(row, 17)
     first, last = plan.first_characteristic, plan.last_characteristic
     headings = vocabulary.headings("characteristics")
     columns = {heading.field: column for column, heading in enumerate(headings)}

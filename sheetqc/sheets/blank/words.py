@@ -18,7 +18,7 @@ MODELS_RANGE = f"={_NAME}!$E${_FIRST + 1}:$E${_FIRST + len(_MODELS)}"
 def fill(sheet: Any, look: Look) -> None:
     """Fills the sheet with the words of both lists and what each kind stands for."""
     page(sheet, "Kinds and models")
-    sheet.fit_to_pages(1, 0)
+    sheet.fit_to_pages(1, 1)
     sheet.set_row(0, 26)
     sheet.write(0, 0, "Kinds and models", look.title)
     sheet.set_column(0, 0, 22)
