@@ -112,5 +112,5 @@ def _end_with(sentinel: int) -> None:
     os._exit(1)
 
 
-def ready() -> None:
-    """Nothing; given to a worker so that it starts before it is needed."""
+def ready(*_: object) -> None:
+    """Nothing; given to a worker so that it starts, and imports what it is handed, before it is needed."""

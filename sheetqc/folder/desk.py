@@ -7,11 +7,12 @@ import time
 from collections import deque
 from collections.abc import Callable
 from concurrent.futures import BrokenExecutor, CancelledError, Future
-from dataclasses import dataclass, field
 from pathlib import Path
+from typing import Any
 
 from sheetqc.folder import claims, publish
-from sheetqc.folder.answering import OVERTIME, Answerer, Reply, tried
+from sheetqc.folder.answering import OVERTIME, Answerer, Reply, ready, tried
+from sheetqc.folder.case import MOST_CRASHES, MOST_TRIES, MOST_TROUBLES, Case, Limits, Tally
 from sheetqc.folder.claims import Claim
 from sheetqc.folder.journal import Entry, Journal
 from sheetqc.folder.layout import Layout
@@ -21,59 +22,8 @@ from sheetqc.folder.publish import Decision, Done
 from sheetqc.folder.reports import repeated_answer, returned_report
 from sheetqc.folder.workers import Workers
 
-MOST_CRASHES = 3
-"""Times a file may end the process that answers it alone."""
-
-MOST_TROUBLES = 7
-"""Times a try may fail for a reason outside the file."""
-
-MOST_TRIES = 25
-"""Tries begun, those included that ended with the whole service."""
-
-_FIRST_PAUSE, _LONGEST_PAUSE = 0.25, 60.0
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Limits:
-    """How far tries go: `seconds` of time (0: no limit), and whether failures outside a file come to an end.
-
-    `edition` names the answerer's version: an answer is repeated only within one edition.
-    """
-
-    seconds: float
-    bounded: bool
-    edition: str
-
-
-@dataclass(slots=True, kw_only=True)
-class Case:
-    """A claimed file on its way: its content as claimed, and what is decided so far."""
-
-    claim: Claim
-    sha256: str = ""
-    state: tuple[int, int] = (0, 0)
-    alone: bool = False
-    into: Path | None = None
-    decision: Decision | None = None
-    done: Done | None = None
-    failures: int = 0
-    not_before: float = 0.0
-
-    def later(self) -> None:
-        """Put off, each time for longer."""
-        self.failures += 1
-        self.not_before = time.monotonic() + min(_FIRST_PAUSE * 2.0 ** (self.failures - 1), _LONGEST_PAUSE)
-
-
-@dataclass(slots=True)
-class Tally:
-    """What this service has done."""
-
-    answered: int = 0
-    returned: int = 0
-    left: list[str] = field(default_factory=list)
-    given_up: set[Path] = field(default_factory=set)
-    """Files given back to in/ that this service must not take again."""
+PROBE = "probe"
+"""Under which the workers report that a fresh one could be started."""
 
 
 class Desk:
@@ -90,6 +40,7 @@ class Desk:
         self._limits = limits
         self._queue: deque[Case] = deque()
         self._suspects: deque[Case] = deque()
+        self._probed_for: Case | None = None
         self._running: dict[str, Case] = {}
         self._closing: list[Case] = []
         self._twins: dict[str, list[Case]] = {}
@@ -98,7 +49,7 @@ class Desk:
     @property
     def held(self) -> int:
         """Claims held."""
-        return self.waiting + len(self._running) + len(self._closing)
+        return self.waiting + len(self._running) + len(self._closing) + (self._probed_for is not None)
 
     @property
     def running(self) -> int:
@@ -130,22 +81,31 @@ class Desk:
 
     def feed(self, most: int) -> None:
         """Give queued cases to the workers, at most `most` at a time; suspects one by one."""
-        if any(case.alone for case in self._running.values()):
+        if self._probed_for is not None or any(case.alone for case in self._running.values()):
             return
         if self._suspects:
-            if not self._running:
-                case = self._suspects.popleft()
-                case.alone = True
-                self._start(case)
+            if not self._running and self._suspects[0].not_before <= time.monotonic():
+                self._probed_for = self._suspects.popleft()
+                self._workers.submit(PROBE, ready, self._answer)
             return
-        while len(self._running) < most and (ready := self._next()) is not None:
-            self._start(ready)
+        while len(self._running) < most and (case := self._next()) is not None:
+            self._start(case)
 
-    def finished(self, ticket: str, future: Future[Reply]) -> None:
+    def finished(self, key: str, future: Future[Any]) -> None:
         """Take in what a worker has finished."""
-        case = self._running.pop(ticket)
-        alone = case.alone
-        case.alone = False
+        if key == PROBE:
+            self._probed(future)
+            return
+        case = self._running.pop(key)
+        alone, case.alone = case.alone, False
+        try:
+            self._take_in(case, future, alone)
+        except Exception:
+            if not any(case in places for places in (self._queue, self._suspects, self._closing)):
+                self._queue.append(case)  # whatever went wrong, it must not be forgotten
+            raise
+
+    def _take_in(self, case: Case, future: Future[Any], alone: bool) -> None:
         try:
             reply = future.result()
         except CancelledError:
@@ -157,6 +117,19 @@ class Desk:
         else:
             self._settle(case, reply)
 
+    def _probed(self, future: Future[Any]) -> None:
+        """Start a suspect by itself, but only with a worker that is known to live: else it is not the file's fault."""
+        case, self._probed_for = self._probed_for, None
+        if case is None:
+            return
+        if future.cancelled():
+            self._suspects.append(case)
+        elif error := future.exception():
+            self._put_off(case, f"no worker can be started ({error})", self._suspects.append)
+        else:
+            case.alone = True
+            self._start(case)
+
     def carry_on(self) -> None:
         """Carry out the decisions that were put off and are due."""
         now = time.monotonic()
@@ -167,7 +140,8 @@ class Desk:
     def give_back(self) -> None:
         """Give every file no worker has begun back to in/."""
         twins = [case for waiting in self._twins.values() for case in waiting]
-        for case in (*self._queue, *self._suspects, *twins):
+        probed, self._probed_for = self._probed_for, None
+        for case in (*self._queue, *self._suspects, *twins, *([probed] if probed else [])):
             self._released(case)
         self._queue.clear()
         self._suspects.clear()
@@ -268,21 +242,25 @@ class Desk:
         if not case.claim.folder.exists():
             self._lost_or_later(case, FileNotFoundError(), self._queue.append)
             return
-        self._log.say_rarely(f"{case.claim.shown}: {reply.text}; tried again later")
         if reply.state == "trouble":
             with contextlib.suppress(OSError):
                 case.claim = claims.noted(case.claim, troubles=1)
             if case.claim.troubles >= MOST_TROUBLES:
                 self._unexpected(case, reply)
                 return
+        self._put_off(case, reply.text, self._queue.append)
+
+    def _put_off(self, case: Case, why: str, put: Callable[[Case], object]) -> None:
+        """Keep for later; give back to in/ where this service is to come to an end."""
+        self._log.say_rarely(f"{case.claim.shown}: {why}; tried again later")
         case.later()
-        if self._limits.bounded and case.failures >= MOST_TROUBLES:
-            self._gone(case)
-            self.tally.left.append(f"{case.claim.shown}: {reply.text}")
-            self.tally.given_up.add(self._layout.inbox / case.claim.place / case.claim.name)
-            self._released(case)
-        else:
-            self._queue.append(case)
+        if not self._limits.bounded or case.failures < MOST_TROUBLES:
+            put(case)
+            return
+        self.tally.left.append(f"{case.claim.shown}: {why}")
+        self.tally.given_up.add(self._layout.inbox / case.claim.place / case.claim.name)
+        self._gone(case)
+        self._released(case)
 
     def _unexpected(self, case: Case, reply: Reply) -> None:
         log = self._layout.errors / f"{case.claim.ticket}.txt"

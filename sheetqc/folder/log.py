@@ -31,6 +31,11 @@ class Log:
         self._say(line)
         self._logger.info(line)
 
+    def note(self, text: str) -> None:
+        """Lines for the file alone."""
+        for line in text.splitlines():
+            self._logger.info(printable(line))
+
     def say_rarely(self, text: str, seconds: float = 60.0) -> None:
         """One line, unless the same was said a moment ago."""
         now = time.monotonic()

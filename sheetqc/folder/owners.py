@@ -61,9 +61,6 @@ class Owner:
         self._beating = threading.Thread(target=self._beat_on, name="sheetqc-beat", daemon=True)
 
     def __enter__(self) -> Owner:
-        self._lock = sqlite3.connect(self._lock_file, isolation_level=None, check_same_thread=False)
-        with contextlib.suppress(sqlite3.Error):  # a share without locks: the beat must do
-            self._lock.execute("BEGIN EXCLUSIVE")
         self.beat()
         self._beating.start()
         return self
@@ -78,10 +75,19 @@ class Owner:
                 path.unlink(missing_ok=True)
 
     def beat(self) -> None:
-        """Show that this service is alive."""
-        with contextlib.suppress(OSError):
+        """Show that this service is alive, with new files where they were deleted."""
+        with contextlib.suppress(OSError, sqlite3.Error):
             self._beat_file.parent.mkdir(exist_ok=True)
             self._beat_file.write_text(str(time.monotonic_ns()), encoding="ascii")
+            if self._lock is None or not self._lock_file.exists():
+                self._hold()
+
+    def _hold(self) -> None:
+        if self._lock is not None:
+            self._lock.close()
+        self._lock = sqlite3.connect(self._lock_file, isolation_level=None, check_same_thread=False)
+        with contextlib.suppress(sqlite3.Error):  # a share without locks: the beat must do
+            self._lock.execute("BEGIN EXCLUSIVE")
 
     def share_clock(self) -> float | None:
         """Time of the last own beat by the clock of the file system."""

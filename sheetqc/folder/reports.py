@@ -7,6 +7,8 @@ import shutil
 from pathlib import Path
 from typing import Any
 
+from sheetqc import __version__
+from sheetqc.assessment import SCHEMA
 from sheetqc.folder.claims import Claim
 from sheetqc.folder.journal import Entry
 from sheetqc.folder.moves import write_whole
@@ -17,7 +19,8 @@ def returned_report(claim: Claim, into: Path, sha256: str, code: str, reason: st
     """Write NAME.returned.json with the reason; `more` are further texts, left out where empty."""
     finding = {"code": code, "level": "stop", "text": reason, "cells": [more["cell"]] if more.get("cell") else []}
     document: dict[str, Any] = {
-        "schema": 1,
+        "schema": SCHEMA,
+        "tool": {"name": "sheetqc", "version": __version__},
         "source": {"name": printable(claim.name), "sha256": sha256, "bytes": claim.file.stat().st_size},
         "reason": reason,
         **{name: text for name, text in more.items() if text and name != "cell"},

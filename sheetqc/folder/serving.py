@@ -6,6 +6,7 @@ import contextlib
 import signal
 import threading
 import time
+import traceback
 from collections.abc import Callable, Iterator
 from concurrent.futures import Executor
 from dataclasses import dataclass
@@ -14,7 +15,8 @@ from types import FrameType
 
 from sheetqc.folder import claims
 from sheetqc.folder.answering import Answerer
-from sheetqc.folder.desk import Desk, Limits
+from sheetqc.folder.case import Limits
+from sheetqc.folder.desk import Desk
 from sheetqc.folder.events import Events
 from sheetqc.folder.journal import Journal
 from sheetqc.folder.layout import Layout
@@ -37,6 +39,9 @@ _RETAKE = 5.0
 
 _ONCE_PATIENCE = 2.0
 """Seconds an unfinished file must lie still when the service is to end."""
+
+_MOST_FAILURES, _MOST_FAILURES_ONCE = 100_000, 10
+"""Turns of the loop that may fail in a row: days, for a share that is gone; less when the service is to end."""
 
 _MOST_SUMMARIES = 3
 """Tries at a summary when the service is to end."""
@@ -115,6 +120,8 @@ def serve(
         patience = _ONCE_PATIENCE if once else PATIENCE
         sweep = Sweep(layout.inbox, settle, patience, excluded=desk.tally.given_up)
         summary = Summary(layout, after, pool, log)
+        if not once:
+            pool.start(answer)
         service = _Service(layout, owner, desk, sweep, summary, pool, wake, log, workers, once=once)
         service.run(polling=polling or once)
     return ServeResult(answered=desk.tally.answered, returned=desk.tally.returned, left=tuple(desk.tally.left))
@@ -182,6 +189,7 @@ class _Service:
         self._next_look = 0.0
         self._next_retake = 0.0
         self._every = _SWEEP
+        self._failures = 0
 
     def run(self, *, polling: bool) -> None:
         """Loop until ended."""
@@ -207,27 +215,37 @@ class _Service:
         if not others:
             forget_all(self._layout)
         if not self._once:
-            self._pool.start()
             self._log.say(f"serving {self._layout.root}; drop workbooks into {self._layout.inbox}")
 
     def _turn(self) -> None:
         try:
-            for key, future in self._pool.finished():
-                if key == KEY:
-                    self._summary.finished(future)
-                else:
-                    self._desk.finished(key, future)
-            if not self._layout.reachable():
-                raise FileNotFoundError(f"{self._layout.inbox} is not there")
-            self._retake()
-            self._look()
-            self._claim()
-            self._desk.carry_on()
-            self._desk.feed(self._most)
-            self._summary.start(quiet=self._desk.held == 0 and not self._sweep.ready(time.monotonic(), 1))
-        except OSError as error:
-            self._log.say_rarely(f"the folder cannot be used now: {error}; tried again every few seconds")
+            self._steps()
+            self._failures = 0
+        except Exception as error:
+            self._failures += 1
+            if self._failures >= (_MOST_FAILURES_ONCE if self._once else _MOST_FAILURES):
+                raise
+            if isinstance(error, OSError):
+                self._log.say_rarely(f"the folder cannot be used now: {error}; tried again every few seconds")
+            else:
+                self._log.say_rarely(f"an error in the service itself: {error!r}; it goes on")
+                self._log.note(traceback.format_exc())
             self._next_look = time.monotonic() + _SWEEP
+
+    def _steps(self) -> None:
+        for key, future in self._pool.finished():
+            if key == KEY:
+                self._summary.finished(future)
+            else:
+                self._desk.finished(key, future)
+        if not self._layout.reachable():
+            raise FileNotFoundError(f"{self._layout.inbox} is not there")
+        self._retake()
+        self._look()
+        self._claim()
+        self._desk.carry_on()
+        self._desk.feed(self._most)
+        self._summary.start(quiet=self._desk.held == 0 and not self._sweep.ready(time.monotonic(), 1))
 
     def _retake(self) -> None:
         now = time.monotonic()
@@ -238,7 +256,11 @@ class _Service:
             owner = claims.owner_of(folder)
             if not owner or not self._neighbours.is_dead(owner):
                 continue
-            claim = claims.take_back(self._layout, self._owner.name, folder)
+            try:
+                claim = claims.take_back(self._layout, self._owner.name, folder)
+            except OSError as error:  # a worker of the dead service may still hold a file for a moment
+                self._log.say_rarely(f"{folder.name}: cannot be taken over now: {error}")
+                continue
             if claim is not None:
                 self._log.say(f"{claim.shown}: taken over from a service that has ended")
                 self._desk.accept(claim)
@@ -296,18 +318,27 @@ class _Service:
             self._desk.give_back()
             self._wake.wait(0.25)
         self._desk.carry_on()
+        for folder in self._layout.working.glob(f"{self._owner.name}.*"):
+            claim = claims.seen(folder)
+            name = claim.shown if claim else folder.name
+            self._leave(f"{name}: stays in working/ until the next start")
+
+    def _leave(self, text: str) -> None:
+        self._desk.tally.left.append(text)
+        self._log.say(f"left: {text}")
 
     def _note_left(self) -> None:
-        if self._once:
-            inbox = self._layout.inbox
-            for watched in self._sweep.waiting():
-                why = watched.hindrance or "not complete"
-                self._desk.tally.left.append(f"{watched.dropped.path.relative_to(inbox).as_posix()}: {why}")
-            for dropped in self._sweep.aside():
-                if "temporary" not in dropped.aside:
-                    self._desk.tally.left.append(f"{dropped.path.relative_to(inbox).as_posix()} {dropped.aside}")
         for line in self._desk.tally.left:
             self._log.say(f"left: {line}")
+        if not self._once:
+            return
+        inbox = self._layout.inbox
+        for watched in self._sweep.waiting():
+            name = watched.dropped.path.relative_to(inbox).as_posix()
+            self._leave(f"{name}: {watched.hindrance or 'not complete'}")
+        for dropped in self._sweep.aside():
+            if "temporary" not in dropped.aside:
+                self._leave(f"{dropped.path.relative_to(inbox).as_posix()} {dropped.aside}")
 
 
 @contextlib.contextmanager

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import contextlib
 import multiprocessing
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 from concurrent.futures import BrokenExecutor, Executor, Future, ProcessPoolExecutor
 from queue import Empty, SimpleQueue
 from typing import Any
@@ -42,11 +42,11 @@ class Workers:
         self._executor: Executor | None = None
         self._unfinished: set[Future[Any]] = set()
 
-    def start(self) -> None:
-        """Have the workers started and warm before there is work."""
+    def start(self, *handed: object) -> None:
+        """Have the workers started and warm, with what they will be handed, before there is work."""
         with contextlib.suppress(BrokenExecutor):
             for _ in range(self._size):
-                self._pool().submit(ready)
+                self._pool().submit(ready, *handed)
 
     def submit(self, key: str, work: Callable[..., object], *arguments: object) -> Future[Any]:
         """Give work to the pool; its end is reported under `key`."""
@@ -61,17 +61,17 @@ class Workers:
         future.add_done_callback(lambda done: self._note(key, done, pool))
         return future
 
-    def finished(self) -> list[tuple[str, Future[Any]]]:
+    def finished(self) -> Iterator[tuple[str, Future[Any]]]:
         """What has finished since the last call. Where that shows a broken pool, the next work gets a new one."""
-        found = []
-        with contextlib.suppress(Empty):
-            while True:
+        while True:
+            try:
                 key, future, pool = self._finished.get_nowait()
-                if not future.cancelled() and isinstance(future.exception(), BrokenExecutor):
-                    self._replace(pool)
-                self._unfinished.discard(future)
-                found.append((key, future))
-        return found
+            except Empty:
+                return
+            self._unfinished.discard(future)
+            if not future.cancelled() and isinstance(future.exception(), BrokenExecutor):
+                self._replace(pool)
+            yield key, future
 
     def cancel(self) -> None:
         """Take back the work that no worker has begun; it is reported as cancelled."""

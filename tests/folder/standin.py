@@ -20,8 +20,9 @@ def package(path: Path, content: str = "", size: int = 200) -> Path:
     path.parent.mkdir(parents=True, exist_ok=True)
     temporary = path.with_name(f"~{path.name}.tmp")
     with zipfile.ZipFile(temporary, "w") as book:
-        book.writestr("content.txt", content or path.name)
-        book.writestr("filling.bin", b"\x07" * size)
+        # ZipInfo without a time: the same content gives the same file whenever it is made
+        book.writestr(zipfile.ZipInfo("content.txt"), content or path.name)
+        book.writestr(zipfile.ZipInfo("filling.bin"), b"\x07" * size)
     temporary.replace(path)
     return path
 

@@ -111,5 +111,7 @@ def test_signs_that_were_deleted_come_back(layout: Layout) -> None:
     with Owner(layout) as owner:
         (layout.owners / f"{owner.name}.beat").unlink()
         assert owner.share_clock() is None
+        (layout.owners / f"{owner.name}.lock").unlink()
         owner.beat()
+        assert lock_state(layout.owners / f"{owner.name}.lock") == "held"
         assert owner.share_clock() == pytest.approx(time.time(), abs=5)

@@ -2,6 +2,7 @@ from __future__ import annotations
 
 import errno
 import json
+import logging
 import threading
 import time
 from collections.abc import Callable, Iterator
@@ -11,7 +12,7 @@ from typing import Any
 
 import pytest
 
-from sheetqc.folder import ServeResult, claims, moves, serve, serving
+from sheetqc.folder import ServeResult, claims, moves, publish, serve, serving
 from sheetqc.folder.layout import Layout
 from sheetqc.outcome import Outcome
 from tests.folder.standin import answer, content_of, package, summarise
@@ -175,7 +176,7 @@ def test_a_full_disk_is_waited_for(layout: Layout, serve_once: ServeOnce, said: 
 
 
 def test_a_disk_that_stays_full_ends_in_giving_back(layout: Layout, serve_once: ServeOnce, monkeypatch: Any) -> None:
-    monkeypatch.setattr("sheetqc.folder.desk._FIRST_PAUSE", 0.01)
+    monkeypatch.setattr("sheetqc.folder.case._FIRST_PAUSE", 0.01)
     package(layout.inbox / "a.xlsx", "always full")
     result = serve_once()
     assert (result.answered, result.returned) == (0, 0)
@@ -186,7 +187,7 @@ def test_a_disk_that_stays_full_ends_in_giving_back(layout: Layout, serve_once: 
 def test_trouble_is_tried_again_but_not_for_ever(
     layout: Layout, serve_once: ServeOnce, said: list[str], monkeypatch: Any
 ) -> None:
-    monkeypatch.setattr("sheetqc.folder.desk._FIRST_PAUSE", 0.01)
+    monkeypatch.setattr("sheetqc.folder.case._FIRST_PAUSE", 0.01)
     package(layout.inbox / "a.xlsx", "faulty disk")
     assert serve_once() == ServeResult(answered=0, returned=1)
     assert "Input/output error" in (layout.returned / "a.returned.json").read_text()
@@ -289,6 +290,60 @@ def test_deadly_and_endless_files_are_returned(layout: Layout, said: list[str]) 
     assert result == ServeResult(answered=4, returned=2)
     assert "3 times" in (layout.returned / "bad.returned.json").read_text()
     assert "within 2 seconds" in (layout.returned / "long.returned.json").read_text()
+
+
+def broken_start() -> None:
+    raise RuntimeError("no worker will ever start")
+
+
+def test_workers_that_cannot_start_are_not_the_files_fault(layout: Layout, said: list[str], monkeypatch: Any) -> None:
+    monkeypatch.setattr("sheetqc.folder.case._FIRST_PAUSE", 0.01)
+    monkeypatch.setattr("sheetqc.folder.case.MOST_TROUBLES", 2)
+    monkeypatch.setattr("sheetqc.folder.desk.MOST_TROUBLES", 2)
+    logging.getLogger("concurrent.futures").disabled = True
+    package(layout.inbox / "a.xlsx")
+    result = serve(layout.root, answer, once=True, settle=0.02, say=said.append, warm=broken_start)
+    logging.getLogger("concurrent.futures").disabled = False
+    assert (result.answered, result.returned) == (0, 0)
+    assert "no worker can be started" in result.left[0]
+    assert (layout.inbox / "a.xlsx").exists()
+
+
+def test_an_error_in_the_service_itself_loses_nothing(
+    layout: Layout, serve_once: ServeOnce, said: list[str], monkeypatch: Any
+) -> None:
+    package(layout.inbox / "a.xlsx")
+    decided, tries = publish.decided, []
+
+    def faulty(*arguments: Any) -> Any:
+        tries.append(1)
+        if len(tries) < 3:
+            raise ZeroDivisionError("a mistake of ours")
+        return decided(*arguments)
+
+    monkeypatch.setattr(publish, "decided", faulty)
+    assert serve_once().answered == 1
+    assert any("a mistake of ours" in line for line in said)
+    assert "Traceback" in next(layout.logs.iterdir()).read_text()
+
+
+def test_an_error_that_stays_loses_nothing(
+    layout: Layout, serve_once: ServeOnce, files: Files, monkeypatch: Any
+) -> None:
+    monkeypatch.setattr(serving, "_SWEEP", 0.01)
+    monkeypatch.setattr("sheetqc.folder.desk.MOST_TRIES", 3)
+    package(layout.inbox / "a.xlsx")
+
+    def faulty(*_: Any) -> Any:
+        raise ZeroDivisionError("a mistake of ours")
+
+    with monkeypatch.context() as patch:
+        patch.setattr(publish, "decided", faulty)
+        result = serve_once()
+    assert result == ServeResult(answered=0, returned=0, left=("a.xlsx: stays in working/ until the next start",))
+    monkeypatch.setattr("sheetqc.folder.desk.MOST_TRIES", 25)
+    assert serve_once().answered == 1
+    assert files()["originals"] == ["a.xlsx"]
 
 
 def test_summary_after_answers(layout: Layout, serve_once: ServeOnce) -> None:

@@ -111,4 +111,4 @@ def test_close_without_work(twice: bool) -> None:
     workers.close()
     if twice:
         workers.close()
-    assert workers.finished() == []
+    assert list(workers.finished()) == []
