@@ -1,0 +1,75 @@
+"""Runs, trend and resemblance of neighbours."""
+
+from itertools import permutations
+
+import numpy as np
+import pytest
+from scipy import stats
+
+from sheetqc.stats import serial
+from sheetqc.stats.errors import DataError
+
+rng = np.random.default_rng(41)
+
+
+def runs_up_down(values: tuple[int, ...]) -> int:
+    up = np.diff(values) > 0
+    return 1 + int(np.sum(up[1:] != up[:-1]))
+
+
+@pytest.mark.parametrize("n", [3, 5, 7])
+def test_runs_up_and_down_by_counting_every_order(n: int) -> None:
+    counted = np.array([runs_up_down(p) for p in permutations(range(n))])
+    expected = [np.mean(counted <= r) for r in range(1, n)]
+    assert serial.runs_up_and_down_cdf(n) == pytest.approx(expected, rel=1e-12)
+
+
+def test_runs_about_the_median_by_simulation() -> None:
+    x = rng.normal(size=(20_000, 16))
+    high = x > np.median(x, axis=1, keepdims=True)
+    runs = 1 + np.sum(high[:, 1:] != high[:, :-1], axis=1)
+    for r in (5, 8, 11):
+        assert serial.runs_probability_at_most(r, 8, 8) == pytest.approx(np.mean(runs <= r), abs=0.012)
+
+
+def test_too_few_runs_have_a_small_probability() -> None:
+    found = serial.runs_test(np.concatenate([rng.normal(0, 1, 20), rng.normal(6, 1, 20)]))
+    assert found.statistic == 2
+    assert found.p_at_most < 1e-9
+    assert found.p_value == pytest.approx(2 * found.p_at_most)
+
+
+def test_one_side_only_is_refused() -> None:
+    with pytest.raises(DataError):
+        serial.runs_test([1.0, 1.0, 1.0, 2.0])
+
+
+def test_trend_against_the_general_library() -> None:
+    x = rng.normal(size=40) + 0.02 * np.arange(40)
+    ours, theirs = serial.linear_trend(x), stats.linregress(np.arange(40), x)
+    assert ours.slope == pytest.approx(theirs.slope, rel=1e-10)
+    assert ours.p_value == pytest.approx(theirs.pvalue, rel=1e-9)
+
+
+def test_a_perfect_line() -> None:
+    found = serial.linear_trend(np.arange(10) * 0.5)
+    assert found.slope == pytest.approx(0.5)
+    assert found.p_value == 0.0
+
+
+@pytest.mark.parametrize("n", [20, 60])
+def test_von_neumann_has_its_size(n: int) -> None:
+    p = np.array([serial.von_neumann(row).p_value for row in rng.normal(size=(3000, n))])
+    assert np.mean(p < 0.05) == pytest.approx(0.05, abs=0.012)
+
+
+def test_von_neumann_sees_a_memory() -> None:
+    x = np.zeros(100)
+    for i in range(1, 100):
+        x[i] = 0.7 * x[i - 1] + rng.normal()
+    assert serial.von_neumann(x).p_value < 1e-4
+
+
+def test_effective_count() -> None:
+    assert serial.effective_count(100, 0.0) == pytest.approx(100)
+    assert serial.effective_count(1000, 0.5) == pytest.approx(1000 / 3, rel=0.01)
