@@ -22,7 +22,9 @@ TABLE = "Judged"
 
 _MOST_LINKS = 60_000
 _LONGEST = 32_000
-_HEAD = 3
+HEAD = 3
+"""Rows above the first row of a list."""
+
 _PLAIN = frozenset(ascii_letters + digits + "/-_.~()+,=@:")
 """What stands for itself in a link; anything else could begin something other than a path."""
 
@@ -71,44 +73,40 @@ ASIDE_COLUMNS = (
 def add_judged(book: Any, formats: Formats, rows: Sequence[Judged], base: Path) -> None:
     """Add the sheet of characteristics; `base` is the folder of the register, to which links are relative."""
     title = "Every characteristic that was judged, those first that need a person most"
-    _add(book, formats, CHARACTERISTICS, TABLE, title, JUDGED_COLUMNS, rows, base)
+    add_list(book, formats, CHARACTERISTICS, TABLE, title, JUDGED_COLUMNS, rows, base)
 
 
 def add_aside(book: Any, formats: Formats, rows: Sequence[Aside], base: Path) -> None:
     """Add the sheet of files without rows of their own."""
     title = "Files returned unanswered, answers that cannot be read, and files that came more than once"
-    _add(book, formats, ASIDE, "SetAside", title, ASIDE_COLUMNS, rows, base)
+    add_list(book, formats, ASIDE, "SetAside", title, ASIDE_COLUMNS, rows, base)
 
 
-def _add(
+def add_list(
     book: Any,
     formats: Formats,
     name: str,
     table: str,
     title: str,
     columns: Sequence[Column],
-    rows: Sequence[Judged] | Sequence[Aside],
+    rows: Sequence[Any],
     base: Path,
-) -> None:
+    *,
+    head: int = HEAD,
+) -> Any:
+    """Add a sheet with a table of rows that begin after `head` rows, and give the sheet."""
     sheet = book.add_worksheet(name)
-    _set_up(sheet, formats, columns, title, len(rows))
-    sheet.add_table(
-        _HEAD - 1,
-        0,
-        _HEAD + max(len(rows), 1) - 1,
-        len(columns) - 1,
-        {
-            "name": table,
-            "style": None,
-            "columns": [{"header": c.heading, "header_format": _heading(formats, c)} for c in columns],
-        },
-    )
+    last = head + max(len(rows), 1) - 1
+    _set_up(sheet, formats, columns, title, head, last)
+    headings = [{"header": c.heading, "header_format": _heading(formats, c)} for c in columns]
+    sheet.add_table(head - 1, 0, last, len(columns) - 1, {"name": table, "style": None, "columns": headings})
     for number, row in enumerate(rows):
-        sheet.set_row(_HEAD + number, height(columns, row))
+        sheet.set_row(head + number, height(columns, row))
         for column, spec in enumerate(columns):
-            write_value(sheet, formats, (_HEAD + number, column), spec, row, base, linked=number < _MOST_LINKS)
+            write_value(sheet, formats, (head + number, column), spec, row, base, linked=number < _MOST_LINKS)
     if not rows:
-        sheet.write_string(_HEAD, 0, "none", formats(font_color=MUTED, italic=True))
+        sheet.write_string(head, 0, "none", formats(font_color=MUTED, italic=True))
+    return sheet
 
 
 def _heading(formats: Formats, column: Column) -> Any:
@@ -120,22 +118,23 @@ def side(column: Column) -> dict[str, Any]:
     return {"align": "right"} if column.kind in _RIGHT else {"align": "left", "indent": 1}
 
 
-def _set_up(sheet: Any, formats: Formats, columns: Sequence[Column], title: str, count: int) -> None:
+def _set_up(sheet: Any, formats: Formats, columns: Sequence[Column], title: str, head: int, last: int) -> None:
     sheet.hide_gridlines(2)
     sheet.set_default_row(18)
     sheet.set_row(0, 26)
     sheet.write_string(0, 0, title, formats(bold=True, font_size=14))
-    sheet.set_row(_HEAD - 1, 30)
-    sheet.freeze_panes(_HEAD, 1)
+    sheet.set_row(head - 1, 30)
+    if head == HEAD:
+        sheet.freeze_panes(head, 1)
+        sheet.repeat_rows(head - 1)
     for number, column in enumerate(columns):
         sheet.set_column(number, number, column.width)
     sheet.set_landscape()
     sheet.set_paper(9)
     sheet.fit_to_pages(1, 0)
-    sheet.repeat_rows(_HEAD - 1)
     sheet.set_margins(0.4, 0.4, 0.5, 0.6)
     sheet.set_footer("&L&8&A&R&8&P / &N")
-    sheet.print_area(0, 0, _HEAD + max(count, 1) - 1, _last_printed(columns))
+    sheet.print_area(0, 0, last, _last_printed(columns))
 
 
 def _last_printed(columns: Sequence[Column]) -> int:
@@ -160,7 +159,7 @@ def write_value(
     value, rule = column.value(row), {"bottom": 1, "bottom_color": HAIRLINE, **side(column)}
     if column.kind == "link":
         _write_link(sheet, formats, at, value, base, linked=linked)
-    elif column.kind == "verdict":
+    elif column.kind == "verdict" and value:
         sheet.write_string(*at, signed(value), formats(bold=True, font_color=SIGNS[value][1], **rule))
     elif column.kind == "time":
         text = time.strftime("%Y-%m-%d %H:%M", time.localtime(value)) if value else ""

@@ -20,6 +20,11 @@ SIGNS = {
 FONT = {"font_name": "Arial", "font_size": 10}
 
 
+def chart_font(size: int) -> dict[str, Any]:
+    """The font of texts in charts."""
+    return {"name": "Arial", "size": size, "color": INK, "bold": False}
+
+
 def signed(state: str) -> str:
     """A verdict as it is printed: sign and word."""
     return f"{SIGNS[state][0]} {state}"

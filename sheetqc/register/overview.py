@@ -8,7 +8,7 @@ from pathlib import Path
 from typing import Any
 
 from sheetqc.register.listing import TABLE, Column, height, safe_text, side, write_value
-from sheetqc.register.look import ACCENT, ACCENT_LIGHT, HAIRLINE, INK, MUTED, PAPER, SIGNS, Formats, signed
+from sheetqc.register.look import ACCENT, ACCENT_LIGHT, HAIRLINE, MUTED, PAPER, SIGNS, Formats, chart_font, signed
 from sheetqc.register.rows import STATES, Aside, Judged
 from sheetqc.register.urgency import chance_wrong
 
@@ -184,7 +184,7 @@ class Overview:
                 }
             )
         _dress(chart, "Verdicts per supplier")
-        chart.set_legend({"position": "bottom", "font": _font(9)})
+        chart.set_legend({"position": "bottom", "font": chart_font(9)})
         rows = bottom - top + 1
         height = max(190, 100 + 24 * rows)
         self._place(chart, top - 1, height, "Bars of how many characteristics of each supplier have which verdict")
@@ -217,7 +217,7 @@ class Overview:
                 "values": [OVERVIEW, top, 3, self._at - 1, 3],
                 "fill": {"color": ACCENT},
                 "gap": 45,
-                "data_labels": {"value": True, "font": _font(9)},
+                "data_labels": {"value": True, "font": chart_font(9)},
             }
         )
         _dress(chart, "Findings, most frequent first")
@@ -247,25 +247,21 @@ def _counted(count: int, thing: str) -> str:
     return f"{count} {thing}" if count == 1 else f"{count} {thing}s"
 
 
-def _font(size: int) -> dict[str, Any]:
-    return {"name": "Arial", "size": size, "color": INK, "bold": False}
-
-
 def _dress(chart: Any, title: str) -> None:
-    chart.set_title({"name": title, "name_font": {**_font(11), "bold": True}, "overlay": False})
+    chart.set_title({"name": title, "name_font": {**chart_font(11), "bold": True}, "overlay": False})
     chart.set_y_axis(
         {
             "reverse": True,
             "crossing": "max",
             "interval_unit": 1,
-            "num_font": _font(9),
+            "num_font": chart_font(9),
             "line": {"color": HAIRLINE},
             "major_tick_mark": "none",
         }
     )
     chart.set_x_axis(
         {
-            "num_font": _font(9),
+            "num_font": chart_font(9),
             "num_format": "0",
             "major_gridlines": {"visible": True, "line": {"color": HAIRLINE, "width": 0.5}},
             "line": {"none": True},

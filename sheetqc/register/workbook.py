@@ -7,6 +7,7 @@ import secrets
 from collections.abc import Sequence
 from pathlib import Path
 
+from sheetqc.register.history import add_history
 from sheetqc.register.listing import add_aside, add_judged
 from sheetqc.register.look import FONT, Formats
 from sheetqc.register.overview import Overview
@@ -55,5 +56,6 @@ def _write(judged: Sequence[Judged], aside: Sequence[Aside], path: Path, base: P
         formats = Formats(book)
         Overview(book, formats, judged, aside, base).write()
         add_judged(book, formats, judged, base)
+        add_history(book, formats, judged, base)
         add_aside(book, formats, aside, base)
         book.close()
