@@ -72,3 +72,8 @@ def axis_around(
 
 def _clean(value: float) -> float:
     return float(f"{value:.12g}")
+
+
+def decimals_within(axis: Axis) -> int:
+    """Decimals that place a point on the axis to a hundred-thousandth of its length: finer than can be drawn."""
+    return 5 - math.floor(math.log10(axis.length))

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from decimal import Decimal
 
 INDEX = "0.00"
 MOMENT = "0.00;-0.00;0.00"
@@ -61,10 +62,8 @@ def decimals_of(values: Sequence[float], limits: Sequence[float | None], resolut
 
 
 def _digits_after_point(value: float) -> int:
-    text = f"{value:.10g}"
-    if "e" in text:
-        return max(0, -math.floor(math.log10(abs(value)))) if value else 0
-    return len(text.partition(".")[2])
+    exponent = Decimal(f"{value:.10g}").normalize().as_tuple().exponent
+    return max(0, -exponent) if isinstance(exponent, int) else 0
 
 
 def _sensible(values: Sequence[float]) -> int:

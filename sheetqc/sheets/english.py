@@ -140,7 +140,6 @@ ENGLISH: Mapping[str, str] = {
     "work.values.number": "No.",
     "work.values.value": "Value",
     "work.values.sorted": "By size",
-    "work.values.position": "Plotting position",
     "work.values.score": "Normal score",
     "work.candidates": "Candidate models (parameters, AICc, weight, A², p: as of the analysis)",
     "work.candidates.model": "Model",

@@ -13,6 +13,9 @@ from sheetqc.sheets.cells import Pen
 from sheetqc.sheets.decimals import Decimals
 from sheetqc.sheets.words import Words
 
+SELECTABLE = 11
+"""Candidates that can be put in use on the sheet: every one lengthens the formulas of the curve."""
+
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Job:
@@ -30,8 +33,16 @@ class Job:
 
     @property
     def models(self) -> tuple[ModelFit, ...]:
-        """The candidates in the order in which they are shown: best weight first."""
-        return tuple(sorted(self.assessment.models, key=lambda fit: -fit.weight))
+        """The candidates in the order in which they are shown: the one in use, then the best weight first.
+
+        The normal model is among the selectable ones wherever it is a candidate: many readers ask for it.
+        """
+        in_use = self.assessment.model_in_use
+        fits = sorted(self.assessment.models, key=lambda fit: (fit.family != in_use, -fit.weight))
+        normal = next((i for i, fit in enumerate(fits) if fit.family == "normal"), 0)
+        if normal >= SELECTABLE:
+            fits.insert(SELECTABLE - 1, fits.pop(normal))
+        return tuple(fits)
 
     @property
     def values(self) -> NDArray[np.float64]:

@@ -155,7 +155,7 @@ def _write_entries(job: Job, work: Workings) -> None:
             layout.MODEL_ENTRY,
             layout.ENTRIES,
             layout.MODEL_ENTRY,
-            {"validate": "list", "source": f"={work.candidates.title.ref}"},
+            {"validate": "list", "source": f"={work.candidates.selectable.ref}"},
         )
     pen.text(layout.STATUS, 0, say("entry.hint"), "muted")
     if "status" in work.quantities:

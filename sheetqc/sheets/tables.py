@@ -73,7 +73,7 @@ def _signal(job: Job, row: int, signal: Signal) -> int:
 
 
 def shape_table(job: Job, work: Workings, row: int) -> int:
-    """The candidates, best weight first; gives the row below."""
+    """The candidates, the one in use first; gives the row below."""
     pen, say, candidates, q = job.pen, job.say, work.candidates, work.quantities
     if "a2" in q:
         row = _line(job, row, say("table.normal"), [(q["a2"], decimals.MOMENT), (q["a2_p"], decimals.PROBABILITY)])
@@ -86,8 +86,7 @@ def shape_table(job: Job, work: Workings, row: int) -> int:
     pen.text(row, 0, say("table.model"), "head")
     for column, key in enumerate(("weight", "p", "Ppk"), start=1):
         pen.text(row, column, say(f"table.{key}"), "head_right")
-    order = sorted(range(candidates.count), key=lambda i: -candidates.fits[i].weight)[:MOST_MODELS]
-    for i in order:
+    for i in range(min(candidates.count, MOST_MODELS)):
         row += 1
         title, selector = candidates.title.at(i), q["model"]
         mark = say("table.in_use")

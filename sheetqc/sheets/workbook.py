@@ -20,6 +20,7 @@ from sheetqc.sheets.words import Words
 from sheetqc.study import Study
 
 OPTIONS = {
+    "in_memory": True,
     "strings_to_formulas": False,
     "strings_to_numbers": False,
     "strings_to_urls": False,

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from sheetqc.sheets.axis import Axis, nice_step
+from sheetqc.sheets.axis import Axis, decimals_within, nice_step
 from sheetqc.sheets.cells import Column, Placed
 from sheetqc.sheets.job import Job
 from sheetqc.sheets.workings.ground import FIRST, Ground
@@ -58,7 +58,13 @@ def write_bars(job: Job, ground: Ground, values: Values, axis: Axis, pixels: flo
         "0.000",
     )
     each = max(1, math.ceil(size / axis.length * pixels / STRIPE))
-    stripes = [(i, start + (i + (j + 0.5) / each) * size) for i in range(count) if inside[i] for j in range(each)]
+    digits = decimals_within(axis)
+    stripes = [
+        (i, round(start + (i + (j + 0.5) / each) * size, digits))
+        for i in range(count)
+        if inside[i]
+        for j in range(each)
+    ]
     outline = [(None, start)] + [(i, start + (i + e) * size) for i in range(count) for e in (0, 1)]
     outline.append((None, start + count * size))
     return Bars(

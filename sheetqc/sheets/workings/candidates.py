@@ -9,7 +9,7 @@ from sheetqc.assessment import ModelFit
 from sheetqc.sheets import decimals
 from sheetqc.sheets.cells import NONE, Column, Placed, Value
 from sheetqc.sheets.expressions import TAIL, constant, literal, of_family
-from sheetqc.sheets.job import Job
+from sheetqc.sheets.job import SELECTABLE, Job
 from sheetqc.sheets.workings.ground import FIRST, Ground
 from sheetqc.sheets.workings.index import Limits, Region, greatest_ppk, least_ppk, pp, ppk
 from sheetqc.stats.families import Family, family
@@ -47,16 +47,21 @@ class Candidates:
         """How many there are."""
         return len(self.fits)
 
+    @property
+    def selectable(self) -> Column:
+        """The titles to choose the model in use from."""
+        return self.title.part(0, min(SELECTABLE, self.count))
+
     def expressions(self, kind: str, **arguments: str) -> tuple[str, ...]:
-        """An expression of every candidate, such as its density at {x}."""
+        """An expression of every selectable candidate, such as its density at {x}."""
         return tuple(
             of_family(family(fit.family), kind, references, **arguments)
-            for fit, references in zip(self.fits, self.parameters, strict=True)
+            for fit, references in zip(self.fits[:SELECTABLE], self.parameters, strict=False)
         )
 
 
 def write_candidates(job: Job, ground: Ground, limits: Limits, regions: Sequence[Region | None]) -> Candidates | None:
-    """Writes the candidates best weight first; `regions` runs in step with them."""
+    """Writes the candidates as they are shown; `regions` runs in step with them."""
     fits = job.models
     if not fits:
         return None

@@ -28,7 +28,7 @@ def add_capability(
     if inputs.model is None:
         return
     place = [c.family for c in candidates.fits].index(job.assessment.model_in_use or "")
-    k = quantities.add("model", f"MATCH({inputs.model.ref},{candidates.title.ref},0)", place + 1, COUNT)
+    k = quantities.add("model", f"MATCH({inputs.model.ref},{candidates.selectable.ref},0)", place + 1, COUNT)
     look = job.decimals
 
     def chosen(key: str, column: Column, number_format: str, name: str = "", analysed: Value | None = None) -> Placed:

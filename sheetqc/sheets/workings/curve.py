@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 from scipy.special import ndtri
 
 from sheetqc.assessment import ModelFit
-from sheetqc.sheets.axis import Axis
+from sheetqc.sheets.axis import Axis, decimals_within
 from sheetqc.sheets.cells import Column, Placed
 from sheetqc.sheets.expressions import choice, constant
 from sheetqc.sheets.job import Job
@@ -17,7 +17,7 @@ from sheetqc.sheets.workings.candidates import Candidates
 from sheetqc.sheets.workings.ground import FIRST, Ground
 from sheetqc.stats.families import family
 
-EVENLY, WITHIN = 24, 40
+EVENLY, WITHIN = 16, 34
 """Points spread evenly over the axis, and points where the models have their body."""
 
 LEAST = 1e-6
@@ -70,6 +70,7 @@ def curve_places(fits: tuple[ModelFit, ...], axis: Axis) -> NDArray[np.float64]:
     low = max(axis.minimum, min(f.quantiles.low for f in fits))
     high = min(axis.maximum, max(f.quantiles.high for f in fits))
     within = np.linspace(low, high, WITHIN) if high > low else np.array([])
-    every = np.unique(np.concatenate([np.linspace(axis.minimum, axis.maximum, EVENLY), within]))
-    close = np.diff(every) < 1e-6 * axis.length
+    every = np.concatenate([np.linspace(axis.minimum, axis.maximum, EVENLY), within])
+    every = np.unique(np.round(every, decimals_within(axis)))
+    close = np.diff(every) < 1e-3 * axis.length
     return np.asarray(every[np.concatenate([[True], ~close])])

@@ -12,8 +12,6 @@ from sheetqc.sheets.cells import Column
 from sheetqc.sheets.job import Job
 from sheetqc.sheets.workings.ground import FIRST, Ground
 
-WIDTH = 6
-
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Values:
@@ -41,18 +39,17 @@ def write_values(job: Job, ground: Ground) -> Values:
     rank = [number.at(i).ref for i in range(count)]
     by_size = pen.formulas(FIRST, column + 2, [f"SMALL({value.ref},{r})" for r in rank], list(ordered), look)
     position = (np.arange(1, count + 1) - 0.375) / (count + 0.25)
-    place = pen.formulas(FIRST, column + 3, [f"({r}-0.375)/({count}+0.25)" for r in rank], list(position), "0.0000")
     score = pen.formulas(
         FIRST,
-        column + 4,
-        [f"_xlfn.NORM.S.INV({place.at(i).ref})" for i in range(count)],
+        column + 3,
+        [f"_xlfn.NORM.S.INV(({r}-0.375)/({count}+0.25))" for r in rank],
         list(ndtri(position)),
         "0.000",
     )
     return Values(number=number, value=value, sorted=by_size, score=score)
 
 
-HEADS = ("number", "value", "sorted", "position", "score")
+HEADS = ("number", "value", "sorted", "score")
 
 
 def _linked_values(job: Job, column: int) -> Column:
