@@ -79,7 +79,7 @@ def test_left_out_values_are_told_with_their_reason() -> None:
 
 def test_a_value_below_its_natural_bound_is_told() -> None:
     asked = Characteristic(id="F", limits=Limits(upper=1.0, natural_lower=0.0))
-    values = tuple([-0.01, *np.abs(steady())])
+    values = (-0.01, *np.abs(steady()))
     found = data_view(
         asked, Sample(characteristic="F", values=values, cells=tuple(Cell("M", i, 1) for i in range(1, 62)))
     )
