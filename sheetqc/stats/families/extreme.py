@@ -34,13 +34,13 @@ def fit_smallest(y: Array) -> tuple[Array, Array]:
 
     def equation(b: Array, rows: Rows) -> tuple[Array, Array]:
         v = u[rows]
-        weight = np.exp(v / b[:, None])
-        total = weight.sum(axis=-1)
+        weight = np.exp(v * (1 / b)[:, None])
+        total = np.add.reduce(weight, axis=-1)
         first = np.einsum("ij,ij->i", weight, v) / total
         second = np.einsum("ij,ij->i", weight, squares[rows]) / total
         return first - mean[rows] - b, -(second - first * first) / (b * b) - 1
 
     low = np.full(len(u), 1e-3)
-    b = falling_root(equation, np.full(len(u), 0.78), low, -mean + 1e-3)
+    b = falling_root(equation, np.full(len(u), 0.78), low, -mean + 1e-3, last=1e-5)
     location = b * np.log(np.mean(np.exp(u / b[:, None]), axis=-1))
     return top[:, 0] + spread[:, 0] * location, spread[:, 0] * b

@@ -27,7 +27,9 @@ def fit_folded(x: Array) -> Array:
 
     def equation(r: Array, rows: Rows) -> tuple[Array, Array]:
         v, root = u[rows], np.sqrt(1 + r * r)
-        t = np.tanh((r * root)[:, None] * v)
+        # tanh by way of one exponential; the argument is never below 0
+        e = np.exp((-2 * r * root)[:, None] * v)
+        t = (1 - e) / (1 + e)
         slope_of_c = (1 + 2 * r * r) / root
         curve = np.einsum("ij,ij,ij->i", 1 - t * t, v, v)
         n = v.shape[-1]
@@ -43,7 +45,7 @@ def fit_folded(x: Array) -> Array:
         def part(s: Array, rows: Rows) -> tuple[Array, Array]:
             return equation(s, take[rows])
 
-        r[take] = falling_root(part, high[take], low[take], high[take])
+        r[take] = falling_root(part, high[take], low[take], high[take], last=1e-6)
         r[take] = np.where(_gain(u[take], r[take]) > 0, r[take], 0.0)
     return _parameters(x, r, root_square[:, 0])
 

@@ -77,10 +77,13 @@ def fit_gamma(x: Array) -> Array:
 
     Reference: Minka (2002), estimating a gamma distribution.
     """
-    mean = x.mean(axis=-1)
-    d = x / mean[:, None] - 1
-    # the mean of d is 0: subtracting d before averaging keeps the digits of a small difference
-    gap = np.mean(d - np.log1p(d), axis=-1)
+    mean = np.add.reduce(x, axis=-1) / x.shape[-1]
+    ratio = x / mean[:, None]
+    gap = -np.add.reduce(np.log(ratio), axis=-1) / x.shape[-1]
+    if np.min(gap) < 1e-6:
+        # the mean of d is 0: subtracting d before averaging keeps the digits of a small difference
+        d = (x - mean[:, None]) / mean[:, None]
+        gap = np.mean(d - np.log1p(d), axis=-1)
     a = (3 - gap + np.sqrt((gap - 3) ** 2 + 24 * gap)) / (12 * gap)
     for _ in range(30):
         inverse = 1 / a + (log_minus_digamma(a) - gap) / (a * a * (1 / a - special.polygamma(1, a)))

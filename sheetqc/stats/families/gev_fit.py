@@ -6,7 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 from scipy import special
 
-from sheetqc.stats.families.maximise import Rows, maximum
+from sheetqc.stats.families.maximise import Rows, at_rows, maximum
 
 Array = NDArray[np.float64]
 
@@ -31,7 +31,7 @@ def fit_gev(x: Array) -> Array:
     u = (x - centre) / spread
 
     def objective(phi: Array, rows: Rows) -> tuple[Array, Array]:
-        return _likelihood(u if len(rows) == len(u) else u[rows], phi)
+        return _likelihood(at_rows(u, rows), phi)
 
     phi, value = maximum(objective, _start(u), _LOW, _HIGH)
     border = _at_minus_one(u)

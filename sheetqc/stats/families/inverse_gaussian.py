@@ -89,10 +89,11 @@ class InverseGaussian(Family):
         return invert(self, tail, p, low, high, upper=upper, logarithmic=True)
 
     def _fit(self, x: Array) -> Array:
-        mean = x.mean(axis=-1)
+        n = x.shape[-1]
+        mean = np.add.reduce(x, axis=-1) / n
         # mean(1/x) - 1/mean(x) as a mean of squares, without cancellation
         d = x - mean[:, None]
-        excess = np.mean(d * d / x, axis=-1) / (mean * mean)
+        excess = np.einsum("ij,ij,ij->i", d, d, 1 / x) / (n * mean * mean)
         return np.stack([mean, 1 / excess], axis=-1)
 
     def sample(self, theta: ArrayLike, size: int, rng: np.random.Generator) -> Array:

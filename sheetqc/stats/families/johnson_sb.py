@@ -134,6 +134,10 @@ class JohnsonSBWithin(_Bounded):
     def _cells(self) -> tuple[str, str]:
         return f"({self.lower!r})", f"({self.upper!r})"
 
+    def normal_scale(self, x: ArrayLike) -> Array:
+        values = np.asarray(x, dtype=float)
+        return np.log(values - self.lower) - np.log(self.upper - values)
+
     def _fit(self, x: Array) -> Array:
         return fit_sb_within(x, self.lower, self.upper)
 

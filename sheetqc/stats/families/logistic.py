@@ -6,6 +6,7 @@ import numpy as np
 
 from sheetqc.stats.families.base import Array
 from sheetqc.stats.families.location_scale import LocationScale
+from sheetqc.stats.families.moments import standardised
 from sheetqc.stats.families.standard import LOGISTIC
 from sheetqc.stats.families.worksheet import Worksheet
 
@@ -43,8 +44,7 @@ def fit_logistic(x: Array) -> Array:
     In a = location / scale and b = 1 / scale the log-likelihood is concave (Burridge 1981), so Newton steps, shortened
     where they are long, lead to its one maximum from the moments.
     """
-    centre, spread = x.mean(axis=-1, keepdims=True), x.std(axis=-1, keepdims=True)
-    u = (x - centre) / spread
+    u, centre, spread = standardised(x)
     squares = u * u
     count = len(u)
     a, b = np.zeros(count), np.full(count, 1.8)
@@ -56,7 +56,7 @@ def fit_logistic(x: Array) -> Array:
         shorten = np.where(longest > 1, 1 / longest, 1.0)
         a[rows] += shorten * step_a
         b[rows] += shorten * step_b
-        active = active[longest > 1e-8]
+        active = active[longest > 1e-5]
         if not len(active):
             break
     return np.stack([centre[:, 0] + spread[:, 0] * a / b, spread[:, 0] / b], axis=-1)
@@ -65,10 +65,12 @@ def fit_logistic(x: Array) -> Array:
 def _newton_step(u: Array, squares: Array, a: Array, b: Array) -> tuple[Array, Array]:
     """The Newton step in (a, b); z = b u - a, log-likelihood n log b - 2 sum log cosh(z / 2)."""
     n = u.shape[-1]
-    t = np.tanh(0.5 * (b[:, None] * u - a[:, None]))
+    # tanh(z / 2) by way of one exponential
+    e = np.exp(np.minimum(a[:, None] - b[:, None] * u, 700.0))
+    t = (1 - e) / (1 + e)
     curve = 0.5 * (1 - t * t)
-    slope_a, slope_b = t.sum(axis=-1), n / b - np.einsum("ij,ij->i", t, u)
-    aa = curve.sum(axis=-1)
+    slope_a, slope_b = np.add.reduce(t, axis=-1), n / b - np.einsum("ij,ij->i", t, u)
+    aa = np.add.reduce(curve, axis=-1)
     ab = -np.einsum("ij,ij->i", curve, u)
     bb = np.einsum("ij,ij->i", curve, squares) + n / (b * b)
     area = aa * bb - ab * ab

@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 import numpy as np
+from numpy.typing import ArrayLike
 
 from sheetqc.stats.families.base import Array, Parameters
 from sheetqc.stats.families.location_scale import LogLocationScale
+from sheetqc.stats.families.moments import mean_and_sd
 from sheetqc.stats.families.standard import NORMAL
 from sheetqc.stats.families.worksheet import Worksheet, above
 
@@ -41,6 +43,8 @@ class Lognormal(LogLocationScale):
     def _log_slope(self, p: Parameters) -> Array:
         return -np.log(p[1])
 
+    def normal_scale(self, x: ArrayLike) -> Array:
+        return np.asarray(np.log(np.asarray(x, dtype=float)))
+
     def _fit(self, x: Array) -> Array:
-        y = np.log(x)
-        return np.stack([y.mean(axis=-1), y.std(axis=-1)], axis=-1)
+        return np.stack(mean_and_sd(np.log(x)), axis=-1)

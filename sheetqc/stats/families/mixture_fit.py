@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from sheetqc.stats.families.maximise import Rows, maximum
+from sheetqc.stats.families.maximise import Rows, at_rows, maximum
 
 Array = NDArray[np.float64]
 
@@ -28,7 +28,7 @@ def fit_mixture(x: Array) -> Array:
     u = np.sort((x - centre) / spread, axis=-1)
 
     def objective(phi: Array, rows: Rows) -> tuple[Array, Array]:
-        return _likelihood(u if len(rows) == len(u) else u[rows], phi)
+        return _likelihood(at_rows(u, rows), phi)
 
     every = np.arange(len(u))
     starts = np.stack([_improved(u, share) for share in _first_shares(u)])

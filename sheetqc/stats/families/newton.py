@@ -13,11 +13,13 @@ Equation = Callable[[Array, Rows], tuple[Array, Array]]
 """Gives value and slope at one point for each of the rows asked for."""
 
 
-def falling_root(equation: Equation, start: Array, low: Array, high: Array, *, rounds: int = 100) -> Array:
+def falling_root(
+    equation: Equation, start: Array, low: Array, high: Array, *, rounds: int = 100, last: float = 1e-8
+) -> Array:
     """The root of a function that is positive at `low` and negative at `high`: Newton steps kept inside the bracket.
 
-    Rows that have converged leave the computation; a step below 1e-8 of the value is the last one, which with
-    quadratic convergence leaves an error near 1e-16.
+    Rows that have converged leave the computation; a step below `last` of the value is the last one, which with
+    quadratic convergence leaves an error near its square.
 
     Parameters
     ----------
@@ -40,7 +42,7 @@ def falling_root(equation: Equation, start: Array, low: Array, high: Array, *, r
         step = here - value / slope
         inside = (step > floor[rows]) & (step < ceiling[rows])
         root[rows] = np.where(inside, step, np.where(value == 0, here, 0.5 * (floor[rows] + ceiling[rows])))
-        moved = np.abs(root[rows] - here) > 1e-8 * np.abs(here) + 1e-15
+        moved = np.abs(root[rows] - here) > last * np.abs(here) + 1e-15
         active = active[moved & (value != 0)]
         if not len(active):
             break

@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 import numpy as np
+from numpy.typing import ArrayLike
 
 from sheetqc.stats.families.base import Array
 from sheetqc.stats.families.location_scale import LocationScale
+from sheetqc.stats.families.moments import mean_and_sd
 from sheetqc.stats.families.standard import NORMAL
 from sheetqc.stats.families.worksheet import Worksheet
 
@@ -32,5 +34,8 @@ class Normal(LocationScale):
             upper_quantile="{mean}-{sd}*NORM.S.INV({q})",
         )
 
+    def normal_scale(self, x: ArrayLike) -> Array:
+        return np.asarray(x, dtype=float)
+
     def _fit(self, x: Array) -> Array:
-        return np.stack([x.mean(axis=-1), x.std(axis=-1)], axis=-1)
+        return np.stack(mean_and_sd(x), axis=-1)

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from sheetqc.stats.families.base import Array, Family, Parameters
-from sheetqc.stats.families.maximise import Rows, best_start, maximum
+from sheetqc.stats.families.maximise import Rows, at_rows, best_start, maximum
 from sheetqc.stats.families.worksheet import Worksheet
 
 NEAREST = 0.05
@@ -94,15 +94,14 @@ class Thresholded(Family):
 
         def objective(phi: Array, rows: Rows) -> tuple[Array, Array]:
             gap = np.exp(phi[:, :1])
-            v = (u if len(rows) == len(u) else u[rows]) + gap
+            v = at_rows(u, rows) + gap
             value, by_inner, by_threshold = self._profile(v, np.log(v), phi[:, 1:])
             gradient = np.concatenate([-by_threshold[:, None] * gap, by_inner], axis=-1)
             usable = np.isfinite(value)
             return np.where(usable, value, -np.inf), np.where(usable[:, None], gradient, 0.0)
 
-        every = np.arange(len(u))
         starts = np.stack([self._start(u, gap) for gap in _GRID])
-        start = best_start(lambda phi: objective(phi, every)[0], starts)
+        start = best_start(objective, starts)
         low, high = _box(starts.shape[-1])
         phi, _ = maximum(objective, start, low, high)
         gap = np.exp(phi[:, :1])

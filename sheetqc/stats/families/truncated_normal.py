@@ -86,6 +86,9 @@ class TruncatedNormal(Family):
             return np.asarray(p[0] - p[1] * special.ndtri_exp(target))
         return np.maximum(self.upper - p[1] * interval_width((p[0] - self.upper) / p[1], target), self.lower)
 
+    def normal_scale(self, x: ArrayLike) -> Array | None:
+        return np.asarray(x, dtype=float) if np.isinf(self.lower) and np.isinf(self.upper) else None
+
     def _fit(self, x: Array) -> Array:
         if np.isinf(self.lower) and np.isinf(self.upper):
             return np.stack([x.mean(axis=-1), x.std(axis=-1)], axis=-1)
