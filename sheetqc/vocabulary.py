@@ -5,7 +5,7 @@ from __future__ import annotations
 import json
 import unicodedata
 from dataclasses import dataclass
-from functools import cache
+from functools import cache, lru_cache
 from importlib import resources
 from typing import Any, get_args
 
@@ -126,6 +126,7 @@ def field_of(block: str, text: str) -> str | None:
     return _fields(block).get(key(text))
 
 
+@lru_cache(maxsize=4096)
 def word_in(group: str, text: str) -> bool:
     """Whether a text is one of a group of words ("summary_row", "missing", "undetected", "mark")."""
     stripped = unicodedata.normalize("NFKC", text).strip().casefold()

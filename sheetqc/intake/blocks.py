@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+from bisect import bisect_left, bisect_right
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
+from itertools import islice
 
 from sheetqc import vocabulary
 from sheetqc.finding import Cell
@@ -16,7 +18,11 @@ LAST_COLUMN = 1 << 14
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Block:
-    """The cells below a tag: rows `top` to `bottom`, columns `left` to `right`, all inclusive."""
+    """The cells below a tag: rows `top` to `bottom`, columns `left` to `right`, all inclusive.
+
+    `first` is the first filled row, 0 when there is none; `filled` numbers the rows that hold something in the block's
+    columns, in order.
+    """
 
     tag: str
     sheet: Sheet
@@ -25,15 +31,13 @@ class Block:
     bottom: int
     left: int
     right: int
+    first: int = 0
+    filled: tuple[int, ...] = ()
 
     @property
     def name(self) -> str:
         """The tag without its prefix, by which the vocabulary knows it."""
         return self.tag.partition(":")[2]
-
-    def rows(self) -> list[int]:
-        """Numbers of the rows that hold something in the block's columns, in order."""
-        return [n for n in self.sheet.row_numbers() if self.top <= n <= self.bottom and self.columns(n)]
 
     def columns(self, row: int) -> list[int]:
         """Columns of the block that hold something in a row, in order."""
@@ -45,24 +49,41 @@ Tag = tuple[int, int, str]
 
 def blocks_of(sheet: Sheet) -> list[Block]:
     """The blocks of a sheet, in reading order."""
-    tags = [
+    tags = tags_of(sheet)
+    numbers = sheet.row_numbers() if tags else []
+    open_ended = [_with_columns(sheet, numbers, tags, tag) for tag in tags]
+    ended = [replace(block, bottom=_bottom(block, open_ended)) for block in open_ended]
+    return [replace(block, filled=_filled(block, numbers)) for block in ended]
+
+
+def tags_of(sheet: Sheet) -> list[Tag]:
+    """Row, column and tag of every cell that holds one, in reading order."""
+    return sorted(
         (row, column, tag)
-        for row, column, held in sheet.cells()
-        if is_text(held) and (tag := vocabulary.tag_of(shown(held))) is not None
-    ]
-    open_ended = [_with_columns(sheet, tags, tag) for tag in tags]
-    return [replace(block, bottom=_bottom(block, open_ended)) for block in open_ended]
+        for row, held in sheet.rows.items()
+        for column, content in held.items()
+        if content.__class__ is not float
+        and is_text(content)
+        and (tag := vocabulary.tag_of(shown(content))) is not None
+    )
 
 
-def _with_columns(sheet: Sheet, tags: Sequence[Tag], tag: Tag) -> Block:
+def _filled(block: Block, numbers: Sequence[int]) -> tuple[int, ...]:
+    inside = numbers[bisect_left(numbers, block.top) : bisect_right(numbers, block.bottom)]
+    columns = range(block.left, block.right + 1)
+    return tuple(n for n in inside if any(c in columns for c in block.sheet.rows[n]))
+
+
+def _with_columns(sheet: Sheet, numbers: Sequence[int], tags: Sequence[Tag], tag: Tag) -> Block:
     """The block of a tag with its columns: to the right, the next tag's column ends it."""
     row, column, name = tag
-    filled = [n for n in sheet.row_numbers() if n > row and any(c >= column for c in sheet.rows[n])]
+    below = (n for n in numbers[bisect_right(numbers, row) :] if any(c >= column for c in sheet.rows[n]))
+    filled = list(islice(below, 3))
     first = filled[0] if filled else row + 1
     reach = _text_run(sheet, first, column)
     right_of_it = [(r, c) for r, c, _ in tags if c > column and r <= first and (r >= row or c > reach)]
     right = min((c for _, c in right_of_it), default=LAST_COLUMN + 1) - 1
-    width = _width(sheet, tags, filled[:3], column, right)
+    width = _width(sheet, tags, filled, column, right)
     later = [c for r, c, _ in tags if r > first and width < c <= right]
     return Block(
         tag=name,
@@ -71,6 +92,7 @@ def _with_columns(sheet: Sheet, tags: Sequence[Tag], tag: Tag) -> Block:
         top=row + 1,
         bottom=LAST_ROW,
         left=column,
+        first=filled[0] if filled else 0,
         right=min(later, default=right + 1) - 1,
     )
 
@@ -103,5 +125,6 @@ def _bottom(block: Block, blocks: Sequence[Block]) -> int:
 
 
 def _reach(block: Block) -> int:
-    rows = block.rows()
-    return min(_text_run(block.sheet, rows[0], block.left), block.right) if rows else block.left
+    """The last column of the unbroken run of texts in the block's first row."""
+    first = block.first
+    return min(_text_run(block.sheet, first, block.left), block.right) if first else block.left

@@ -26,18 +26,17 @@ class Calculation:
     def calculated(self, sheet: Sheet) -> Sheet:
         """The sheet with its simple formulas computed."""
         self._sheets[_folded(sheet.name)] = sheet
-        rows = sheet.rows
-        for row, column, held in sheet.cells():
-            if isinstance(held, Content) and held.nature == "uncalculated":
-                new = self._content(sheet, row, column, held)
-                if new is not held:
-                    if rows is sheet.rows:
-                        rows = {number: dict(cells) for number, cells in sheet.rows.items()}
-                    if new is None:
-                        del rows[row][column]
-                    else:
-                        rows[row][column] = new
-        return sheet if rows is sheet.rows else replace(sheet, rows=rows)
+        rows = dict(sheet.rows)
+        for row, column in sheet.uncalculated:
+            held = sheet.rows[row][column]
+            new = self._content(sheet, row, column, held) if isinstance(held, Content) else held
+            if rows[row] is sheet.rows[row]:
+                rows[row] = dict(rows[row])
+            if new is None:
+                del rows[row][column]
+            else:
+                rows[row][column] = new
+        return replace(sheet, rows={n: cells for n, cells in rows.items() if cells}) if sheet.uncalculated else sheet
 
     def _content(self, sheet: Sheet, row: int, column: int, held: Content) -> Held | None:
         try:

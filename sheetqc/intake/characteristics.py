@@ -89,7 +89,7 @@ def _of_block(block: Block, doubts: Doubts) -> Iterator[Characteristic]:
 def no_heading_row(block: Block, doubts: Doubts) -> None:
     """Adds the finding that a tag has no heading row below it."""
     titles = listed([h.title for h in vocabulary.headings(block.name) if h.field != "aside"])
-    rows = block.rows()
+    rows = block.filled
     cells = (block.at, *(block.sheet.cell(rows[0], c) for c in block.columns(rows[0]))) if rows else (block.at,)
     met = f"the first filled row, {rows[0]}, holds none" if rows else "nothing stands there"
     doubts.add(

@@ -65,10 +65,10 @@ def _pairs(block: Block) -> Iterator[tuple[int, int, int]]:
 
     Labels may be merged over several columns: the values stand in the next column that holds anything at all.
     """
-    used = sorted({c for row in block.rows() for c in block.columns(row)})
-    labels = [c for c in used if any(_is_label(block, row, c) for row in block.rows())][:1]
+    used = sorted({c for row in block.filled for c in block.columns(row)})
+    labels = [c for c in used if any(_is_label(block, row, c) for row in block.filled)][:1]
     values = [c for c in used if labels and c > labels[0]][:1]
-    for row in block.rows():
+    for row in block.filled:
         held = block.sheet.rows[row]
         if values and labels[0] in held and values[0] in held:
             yield row, labels[0], values[0]

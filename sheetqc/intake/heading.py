@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from bisect import bisect_right
 from collections.abc import Callable
 from dataclasses import dataclass
 
@@ -38,7 +39,7 @@ class HeadingRow:
 
     def data_rows(self) -> list[int]:
         """Numbers of the filled rows below the headings."""
-        return [row for row in self.block.rows() if row > self.last]
+        return list(self.block.filled[bisect_right(self.block.filled, self.last) :])
 
 
 def heading_row(block: Block, known: Callable[[str], bool]) -> HeadingRow | None:
@@ -49,7 +50,7 @@ def heading_row(block: Block, known: Callable[[str], bool]) -> HeadingRow | None
     block : the block
     known : whether a text is a heading that the block may have
     """
-    rows = block.rows()
+    rows = block.filled
     for place, row in enumerate(rows[:_LOOKED_AT]):
         texts = _texts(block, row)
         if not any(known(text) for text in texts.values()):

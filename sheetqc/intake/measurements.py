@@ -17,7 +17,7 @@ from sheetqc.intake.naming import Names, without_unit
 from sheetqc.intake.remarks import tell
 from sheetqc.intake.rows import Row, sorted_rows
 from sheetqc.intake.scale import reference_size
-from sheetqc.intake.taking import Scale, Taken, Taking
+from sheetqc.intake.taking import Scale, Taking
 from sheetqc.study import Characteristic, LeftOut
 
 
@@ -27,22 +27,18 @@ class Piece:
 
     block: Block
     characteristic: str
-    taken: list[Taken] = field(default_factory=list)
+    values: list[float] = field(default_factory=list)
+    cells: list[Cell] = field(default_factory=list)
+    marks: list[str] = field(default_factory=list)
+    copied: list[bool] = field(default_factory=list)
     subgroups: list[str] | None = None
     times: list[str] | None = None
     streams: list[str] | None = None
     left_out: list[LeftOut] = field(default_factory=list)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Raw:
-    """A cell that should hold a value, with its row, its place across the row and the stream of its column."""
-
-    row: Row
-    cell: Cell
-    held: Held
-    column: int
-    stream: str = ""
+Raw = tuple[Row, int, Held]
+"""A cell that should hold a value: its row, its column, what it holds."""
 
 
 def pieces_of(block: Block, characteristics: Sequence[Characteristic], doubts: Doubts) -> list[Piece]:
@@ -55,8 +51,8 @@ def pieces_of(block: Block, characteristics: Sequence[Characteristic], doubts: D
     columns = columns_of(headings, "measurements", names, doubts)
     rows = sorted_rows(headings, columns, doubts)
     raw = _long(columns, rows, names, doubts) if columns.long else _wide(columns, rows)
-    _tell_hidden(block, [r for entries in raw.values() for r in entries], doubts)
-    texts = (shown(r.held) for entries in raw.values() for r in entries if is_text(r.held))
+    _tell_hidden(block, [(r.number, c) for entries in raw.values() for r, c, _ in entries], doubts)
+    texts = (shown(h) for entries in raw.values() for _, _, h in entries if h.__class__ is not float and is_text(h))
     decimal = decimal_mark(texts)
     by_id = {c.id: c for c in characteristics}
     return [_piece(columns, by_id[i], entries, decimal, doubts) for i, entries in raw.items()]
@@ -67,7 +63,7 @@ def _known(text: str, names: Names) -> bool:
 
 
 def _no_known_heading(block: Block, names: Names, doubts: Doubts) -> None:
-    rows = block.rows()
+    rows = block.filled
     cells = (block.at, *(block.sheet.cell(rows[0], c) for c in block.columns(rows[0]))) if rows else (block.at,)
     met = f"row {rows[0]} holds {listed([block.sheet.text(c.row, c.column) for c in cells[1:]])}" if rows else ""
     doubts.add(
@@ -83,23 +79,11 @@ def _no_known_heading(block: Block, names: Names, doubts: Doubts) -> None:
 def _wide(columns: Columns, rows: Sequence[Row]) -> dict[str, list[Raw]]:
     """Raw cells of each characteristic: row after row, within a row from left to right."""
     sheet = columns.block.sheet
-    raw: dict[str, list[Raw]] = {identity: [] for identity in columns.values}
-    for row in rows:
-        held = sheet.rows[row.number]
-        for identity, own in columns.values.items():
-            for column in own:
-                content = held.get(column)
-                if content is not None:
-                    raw[identity].append(
-                        Raw(
-                            row=row,
-                            cell=sheet.cell(row.number, column),
-                            held=content,
-                            column=column,
-                            stream=columns.streams.get(column, ""),
-                        )
-                    )
-    return raw
+    held = [(row, sheet.rows[row.number]) for row in rows]
+    return {
+        identity: [(row, c, contents[c]) for row, contents in held for c in own if c in contents]
+        for identity, own in columns.values.items()
+    }
 
 
 def _long(columns: Columns, rows: Sequence[Row], names: Names, doubts: Doubts) -> dict[str, list[Raw]]:
@@ -115,8 +99,7 @@ def _long(columns: Columns, rows: Sequence[Row], names: Names, doubts: Doubts) -
         if identity is None:
             unlisted.setdefault(text, []).append(sheet.cell(row.number, columns.fields["characteristic"]))
             continue
-        cell = sheet.cell(row.number, columns.fields["value"])
-        raw.setdefault(identity, []).append(Raw(row=row, cell=cell, held=content, column=cell.column))
+        raw.setdefault(identity, []).append((row, columns.fields["value"], content))
     for text, cells in unlisted.items():
         what = f"the characteristic {text}" if text else "no characteristic"
         doubts.add(
@@ -129,55 +112,86 @@ def _long(columns: Columns, rows: Sequence[Row], names: Names, doubts: Doubts) -
     return raw
 
 
-def _tell_hidden(block: Block, raw: Sequence[Raw], doubts: Doubts) -> None:
+def _tell_hidden(block: Block, places_used: Sequence[tuple[int, int]], doubts: Doubts) -> None:
     sheet = block.sheet
-    hidden = [r.cell for r in raw if r.cell.row in sheet.hidden_rows]
+    if sheet.hidden_rows:
+        hidden = [sheet.cell(r, c) for r, c in places_used if r in sheet.hidden_rows]
+        _tell_hidden_cells("row", len({c.row for c in hidden}), hidden, doubts)
+    if sheet.hidden_columns:
+        hidden = [sheet.cell(r, c) for r, c in places_used if sheet.column_hidden(c)]
+        _tell_hidden_cells("column", len({c.column for c in hidden}), hidden, doubts)
+
+
+def _tell_hidden_cells(what: str, count: int, hidden: Sequence[Cell], doubts: Doubts) -> None:
     if hidden:
-        rows = sorted({c.row for c in hidden})
         doubts.add(
-            "hidden-rows",
+            f"hidden-{what}s",
             "caution",
-            f"{counted(len(rows), 'row')} with measured values {'are' if len(rows) > 1 else 'is'} hidden or filtered "
-            f"away ({places(hidden)}) and {'were' if len(rows) > 1 else 'was'} used all the same. To keep values out, "
-            "give a reason under Leave out.",
+            f"{counted(count, what)} with measured values {'are' if count > 1 else 'is'} hidden or filtered away "
+            f"({places(hidden)}) and {'were' if count > 1 else 'was'} used all the same. To keep values out, give a "
+            "reason under Leave out.",
             hidden,
-        )
-    columns = sorted({r.column for r in raw if sheet.column_hidden(r.column)})
-    if columns:
-        cells = [r.cell for r in raw if r.column in columns]
-        doubts.add(
-            "hidden-columns",
-            "caution",
-            f"{counted(len(columns), 'column')} with measured values {'are' if len(columns) > 1 else 'is'} hidden "
-            f"({places(cells)}) and {'were' if len(columns) > 1 else 'was'} used all the same.",
-            cells,
         )
 
 
 def _piece(columns: Columns, asked: Characteristic, raw: Sequence[Raw], decimal: str | None, doubts: Doubts) -> Piece:
     piece = Piece(block=columns.block, characteristic=asked.id)
-    takings: dict[int, Taking] = {}
-    labels: list[tuple[str, str, str]] = []
-    for position, entry in enumerate(raw):
-        taking = takings.get(entry.column)
-        if taking is None:
-            taking = takings[entry.column] = Taking(_scale(columns, asked, raw, entry.column, decimal))
-        taken = taking.value(entry.held, entry.cell)
-        if entry.row.reason:
-            value = None if taken is None else taken.value
-            piece.left_out.append(LeftOut(value=value, cell=entry.cell, reason=entry.row.reason))
-        elif taken is not None:
-            piece.taken.append(taken)
-            labels.append(
-                (_subgroup(columns, asked, entry, position), entry.row.time, entry.stream or entry.row.stream)
-            )
-    if labels:
-        subgroups, times, streams = (list(column) for column in zip(*labels, strict=True))
-        piece.subgroups = subgroups if any(subgroups) else None
-        piece.times = times if any(times) else None
-        piece.streams = streams if any(streams) else None
+    takings = _takings(columns, asked, raw, decimal)
+    plain = {column for column, taking in takings.items() if taking.scale.heading_factor == 1.0}
+    name = columns.block.sheet.name
+    used: list[tuple[int, Row, int]] = []
+    for position, (row, column, held) in enumerate(raw):
+        cell = Cell(name, row.number, column)
+        if held.__class__ is float and column in plain and not row.reason:
+            value, mark, copied = held, "", False
+        else:
+            taken = takings[column].value(held, cell)
+            if row.reason:
+                value_left = None if taken is None else taken.value
+                piece.left_out.append(LeftOut(value=value_left, cell=cell, reason=row.reason))
+                continue
+            if taken is None:
+                continue
+            value, mark, copied = taken.value, taken.mark, taken.copied
+        piece.values.append(value)
+        piece.cells.append(cell)
+        piece.marks.append(mark)
+        piece.copied.append(copied)
+        used.append((position, row, column))
+    _label(piece, columns, asked, used)
     tell(_merged(takings.values()), asked.id, doubts)
     return piece
+
+
+def _takings(columns: Columns, asked: Characteristic, raw: Sequence[Raw], decimal: str | None) -> dict[int, Taking]:
+    """What takes the values of each column."""
+    reference = reference_size((held for _, _, held in raw), asked)
+    return {
+        column: Taking(
+            Scale(
+                unit=asked.unit,
+                typed_unit=columns.units.get(column) or without_unit(columns.texts.get(column, ""))[1],
+                decimal=decimal,
+                reference=reference,
+            )
+        )
+        for column in sorted({column for _, column, _ in raw})
+    }
+
+
+def _label(piece: Piece, columns: Columns, asked: Characteristic, used: Sequence[tuple[int, Row, int]]) -> None:
+    """Labels the values: subgroup by column, else by row where values run across, else by consecutive values."""
+    across = len(columns.values.get(asked.id, ())) > 1 and not columns.streams
+    if "subgroup" in columns.fields and any(row.subgroup for _, row, _ in used):
+        piece.subgroups = [row.subgroup for _, row, _ in used]
+    elif across:
+        piece.subgroups = [str(row.place) for _, row, _ in used]
+    elif asked.subgroup_size is not None:
+        piece.subgroups = [str(position // asked.subgroup_size + 1) for position, _, _ in used]
+    if any(row.time for _, row, _ in used):
+        piece.times = [row.time for _, row, _ in used]
+    streams = [columns.streams.get(column, "") or row.stream for _, row, column in used]
+    piece.streams = streams if any(streams) else None
 
 
 def _merged(takings: Iterable[Taking]) -> Taking:
@@ -186,23 +200,3 @@ def _merged(takings: Iterable[Taking]) -> Taking:
         for what, met in taking.met.items():
             whole.met[what].extend(met)
     return whole
-
-
-def _scale(columns: Columns, asked: Characteristic, raw: Sequence[Raw], column: int, decimal: str | None) -> Scale:
-    return Scale(
-        unit=asked.unit,
-        typed_unit=columns.units.get(column) or without_unit(columns.texts.get(column, ""))[1],
-        decimal=decimal,
-        reference=reference_size((r.held for r in raw), asked),
-    )
-
-
-def _subgroup(columns: Columns, asked: Characteristic, entry: Raw, position: int) -> str:
-    """The subgroup of a value: its row's label, else its row where values run across, else consecutive ones."""
-    if entry.row.subgroup:
-        return entry.row.subgroup
-    if len(columns.values.get(asked.id, ())) > 1 and not columns.streams:
-        return str(entry.row.place)
-    if asked.subgroup_size is not None and "subgroup" not in columns.fields:
-        return str(position // asked.subgroup_size + 1)
-    return ""

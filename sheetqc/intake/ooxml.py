@@ -29,6 +29,11 @@ class Format:
     percent: bool = False
     struck: bool = False
 
+    @property
+    def marked(self) -> bool:
+        """Whether the format says anything at all."""
+        return self.date or self.percent or self.struck
+
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class SheetPart:

@@ -13,7 +13,7 @@ from pathlib import Path
 from lxml import etree
 
 from sheetqc.errors import DamagedWorkbook, NothingToAnswer, WorkbookError
-from sheetqc.intake.blocks import Block, blocks_of
+from sheetqc.intake.blocks import Block, blocks_of, tags_of
 from sheetqc.intake.book import Book, open_book
 from sheetqc.intake.calculation import Calculation
 from sheetqc.intake.characteristics import characteristics_of, require
@@ -87,7 +87,7 @@ def _blocks(book: Book, doubts: Doubts) -> list[Block]:
     blocks: list[Block] = []
     calculation = Calculation(book)
     for candidate in book.candidates():
-        sheet = calculation.calculated(candidate) if blocks_of(candidate) else candidate
+        sheet = calculation.calculated(candidate) if tags_of(candidate) else candidate
         found = blocks_of(sheet)
         if sheet.visible:
             blocks.extend(found)

@@ -38,15 +38,34 @@ def sorted_rows(headings: HeadingRow, columns: Columns, doubts: Doubts) -> list[
     repeated: list[Cell] = []
     summaries: list[Cell] = []
     kept: list[int] = []
+    sheet = headings.block.sheet
+    values = _value_columns(columns)
+    labels = _label_columns(headings, columns, values)
     for number in headings.data_rows():
+        held = sheet.rows[number]
         if _repeats(headings, number):
             repeated.append(_first_cell(headings, number))
-        elif (cell := _summary_cell(headings, columns, number)) is not None:
-            summaries.append(cell)
-        elif _holds_something(columns, number):
+        elif (column := _summary_column(sheet.rows[number], number, values, labels)) is not None:
+            summaries.append(sheet.cell(number, column))
+        elif any(c in held for c in values):
             kept.append(number)
     _tell(repeated, summaries, doubts)
     return _labelled(columns, kept)
+
+
+def _value_columns(columns: Columns) -> list[int]:
+    if columns.long:
+        return [columns.fields["value"]]
+    return sorted(c for own in columns.values.values() for c in own)
+
+
+def _label_columns(headings: HeadingRow, columns: Columns, values: Sequence[int]) -> list[int]:
+    """Columns in which a label such as Mean may stand: those beside the values, and the one left of the block."""
+    used: set[int] = set()
+    for number in headings.data_rows():
+        used.update(headings.block.sheet.rows[number])
+    inside = {c for c in used if headings.block.left - 1 <= c <= headings.block.right}
+    return sorted(inside - set(values) - {columns.fields.get("leave_out", 0)})
 
 
 def _tell(repeated: Sequence[Cell], summaries: Sequence[Cell], doubts: Doubts) -> None:
@@ -74,6 +93,8 @@ def _first_cell(headings: HeadingRow, row: int) -> Cell:
 def _repeats(headings: HeadingRow, row: int) -> bool:
     """Whether a row says the headings again."""
     sheet = headings.block.sheet
+    if any(held.__class__ is float for held in sheet.rows[row].values()):
+        return False
     columns = headings.block.columns(row)
     if not all(is_text(sheet.at(row, c)) for c in columns):
         return False
@@ -81,22 +102,17 @@ def _repeats(headings: HeadingRow, row: int) -> bool:
     return 2 * same > len(columns)
 
 
-def _summary_cell(headings: HeadingRow, columns: Columns, row: int) -> Cell | None:
-    """The cell that makes a row a summary: a label such as Mean beside the values, or formulas over the column."""
-    sheet = headings.block.sheet
-    value_columns = {c for own in columns.values.values() for c in own}
-    if "value" in columns.fields:
-        value_columns.add(columns.fields["value"])
-    reasons = columns.fields.get("leave_out")
-    labels = [c for c in headings.block.columns(row) if c not in value_columns and c != reasons]
-    beside = [headings.block.left - 1] if headings.block.left > 1 else []
-    for column in (*labels, *beside):
-        held = sheet.at(row, column)
-        if is_text(held) and vocabulary.word_in("summary_row", sheet.text(row, column)):
-            return sheet.cell(row, column)
-    filled = [c for c in sorted(value_columns) if sheet.at(row, c) is not None]
-    over = [c for c in filled if _is_over_column(sheet.rows[row][c], row, c)]
-    return sheet.cell(row, over[0]) if over and 2 * len(over) >= len(filled) else None
+def _summary_column(held: dict[int, Held], row: int, values: Sequence[int], labels: Sequence[int]) -> int | None:
+    """The column that makes a row a summary: a label such as Mean beside the values, or formulas over the column."""
+    for column in labels:
+        content = held.get(column)
+        if content is None or content.__class__ is float or not is_text(content):
+            continue
+        if vocabulary.word_in("summary_row", shown(content).strip()):
+            return column
+    formulas = [c for c in values if isinstance(held.get(c), Content)]
+    over = [c for c in formulas if _is_over_column(held[c], row, c)]
+    return over[0] if over and 2 * len(over) >= sum(1 for c in values if c in held) else None
 
 
 def _is_over_column(held: Held, row: int, column: int) -> bool:
@@ -104,12 +120,6 @@ def _is_over_column(held: Held, row: int, column: int) -> bool:
     match = _SUMMARY.match(formula_in(held))
     area = area_of(match["range"].replace("$", "")) if match is not None else None
     return area is not None and area.bottom > area.top and area.bottom < row and area.left <= column <= area.right
-
-
-def _holds_something(columns: Columns, row: int) -> bool:
-    held = columns.block.sheet.rows[row]
-    own = [c for used in columns.values.values() for c in used]
-    return any(c in held for c in own) or (columns.long and columns.fields["value"] in held)
 
 
 def _labelled(columns: Columns, numbers: Sequence[int]) -> list[Row]:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from itertools import chain
 
 from sheetqc.intake.doubts import Doubts, listed
 from sheetqc.intake.measurements import Piece
@@ -15,12 +16,12 @@ def samples_of(
     """A sample for each characteristic that has values, in the order of the characteristics."""
     samples: list[Sample] = []
     for asked in characteristics:
-        own = [p for p in pieces if p.characteristic == asked.id and (p.taken or p.left_out)]
-        if not any(p.taken for p in own):
+        own = [p for p in pieces if p.characteristic == asked.id and (p.values or p.left_out)]
+        if not any(p.values for p in own):
             _tell_missing(asked, own, doubts)
         if own:
             samples.append(_sample(asked, own))
-        if len([p for p in own if p.taken]) > 1:
+        if len([p for p in own if p.values]) > 1:
             _tell_several(asked, own, doubts)
     return tuple(samples)
 
@@ -38,7 +39,7 @@ def _tell_missing(asked: Characteristic, own: Sequence[Piece], doubts: Doubts) -
 
 
 def _tell_several(asked: Characteristic, own: Sequence[Piece], doubts: Doubts) -> None:
-    ats = [p.block.at for p in own if p.taken]
+    ats = [p.block.at for p in own if p.values]
     doubts.add(
         "several-blocks",
         "note",
@@ -50,16 +51,17 @@ def _tell_several(asked: Characteristic, own: Sequence[Piece], doubts: Doubts) -
 
 
 def _sample(asked: Characteristic, own: Sequence[Piece]) -> Sample:
-    taken = [t for p in own for t in p.taken]
+    marks = tuple(chain.from_iterable(p.marks for p in own))
+    copied = tuple(chain.from_iterable(p.copied for p in own))
     return Sample(
         characteristic=asked.id,
-        values=tuple(t.value for t in taken),
-        cells=tuple(t.cell for t in taken),
+        values=tuple(chain.from_iterable(p.values for p in own)),
+        cells=tuple(chain.from_iterable(p.cells for p in own)),
         subgroups=_subgroups(own),
         times=_joined([p.times for p in own], own),
         streams=_joined([p.streams for p in own], own),
-        censored=tuple(t.mark for t in taken) if any(t.mark for t in taken) else (),
-        copied=tuple(t.copied for t in taken) if any(t.copied for t in taken) else (),
+        censored=marks if any(marks) else (),
+        copied=copied if any(copied) else (),
         left_out=tuple(place for p in own for place in p.left_out),
     )
 
@@ -69,7 +71,7 @@ def _joined(columns: Sequence[list[str] | None], own: Sequence[Piece]) -> tuple[
         return None
     joined: list[str] = []
     for column, piece in zip(columns, own, strict=True):
-        joined.extend(column if column is not None else [""] * len(piece.taken))
+        joined.extend(column if column is not None else [""] * len(piece.values))
     return tuple(joined)
 
 

@@ -25,7 +25,10 @@ class Area:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Sheet:
-    """A sheet; only cells that hold something are there."""
+    """A sheet; only cells that hold something are there.
+
+    `uncalculated` lists row and column of the formulas without a stored result.
+    """
 
     name: str
     visible: bool = True
@@ -33,6 +36,7 @@ class Sheet:
     hidden_rows: frozenset[int] = frozenset()
     hidden_columns: tuple[tuple[int, int], ...] = ()
     merged: tuple[Area, ...] = ()
+    uncalculated: tuple[tuple[int, int], ...] = ()
 
     def at(self, row: int, column: int) -> Held | None:
         """What a cell holds, None when it is empty."""

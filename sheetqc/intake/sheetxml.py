@@ -9,50 +9,14 @@ from typing import IO, Any
 
 from lxml import etree
 
+from sheetqc.errors import DamagedWorkbook
 from sheetqc.intake.content import Content, Held
-from sheetqc.intake.ooxml import Format, local, refuse_document_type, text_of, unescaped
+from sheetqc.intake.ooxml import Format, local, text_of, unescaped
 from sheetqc.intake.serials import moment
 from sheetqc.intake.sheet import Area, Sheet
+from sheetqc.intake.slimming import FILLED_CELL, Slimmed
 
 _PLAIN = Format()
-_EMPTY_CELLS = re.compile(rb"(?:<c\s[^<>]*\br=\"[^<>]*/>|<c\s[^<>]*\br=\"[^<>/]*></c>)+")
-_EMPTY_ROWS = re.compile(rb"(?:<row\s[^<>]*\br=\"(?:[^<>]*/>|[^<>/]*>\s*</row>)\s*)+")
-_CHUNK = 1 << 20
-_LONGEST_ROW = 64 << 20
-
-
-class Slimmed:
-    """A sheet part as a file, without its empty cells and rows."""
-
-    def __init__(self, file: IO[bytes]) -> None:
-        self._file = file
-        self._rest = b""
-        self._started = False
-        self._ended = False
-
-    def read(self, size: int = -1) -> bytes:
-        """The next piece; of any length, b"" at the end."""
-        while not self._ended:
-            piece = self._file.read(_CHUNK)
-            if not self._started:
-                refuse_document_type(piece[:4096])
-                self._started = True
-            self._ended = not piece
-            data = self._rest + piece
-            cut = len(data) if self._ended else _cut(data)
-            slim = _EMPTY_ROWS.sub(b"", _EMPTY_CELLS.sub(b"", data[:cut]))
-            self._rest = data[cut:]
-            if slim:
-                return slim
-        return b""
-
-
-def _cut(data: bytes) -> int:
-    """Where to end a piece so that no row is torn; a row that never ends is passed on as it is."""
-    place = data.rfind(b"<row")
-    if place < 0:
-        return max(len(data) - 4, 0)
-    return place if place > 0 or len(data) < _LONGEST_ROW else len(data)
 
 
 class SheetReader:
@@ -63,16 +27,27 @@ class SheetReader:
         self._formats = formats
         self._epoch_1904 = epoch_1904
         self._letters: dict[str, int] = {}
+        self._bytes_letters: dict[bytes, int] = {}
+        self._uncalculated: list[tuple[int, int]] = []
 
     def sheet(self, name: str, visible: bool, file: IO[bytes]) -> Sheet:
         """The sheet of a part."""
+        try:
+            return self._sheet(name, visible, file)
+        except (ValueError, IndexError, TypeError) as error:
+            raise DamagedWorkbook(
+                f"the sheet '{name}' holds something that cannot be read", advice="Save the workbook again."
+            ) from error
+
+    def _sheet(self, name: str, visible: bool, file: IO[bytes]) -> Sheet:
         rows: dict[int, dict[int, Held]] = {}
         hidden: set[int] = set()
+        self._uncalculated = []
         columns: list[tuple[int, int]] = []
         merged: list[Area] = []
         last = 0
         events = etree.iterparse(
-            Slimmed(file),
+            Slimmed(file, lambda number, rest, cells: self._plain_row(number, rest, cells, rows, hidden)),
             events=("end",),
             tag=("{*}row", "{*}col", "{*}mergeCell"),
             resolve_entities=False,
@@ -98,7 +73,34 @@ class SheetReader:
             hidden_rows=frozenset(hidden),
             hidden_columns=tuple(columns),
             merged=tuple(merged),
+            uncalculated=tuple(self._uncalculated),
         )
+
+    def _plain_row(
+        self, number: int, rest: bytes, cells: bytes, rows: dict[int, dict[int, Held]], hidden: set[int]
+    ) -> None:
+        held: dict[int, Held] = {}
+        for letters, look, kind, value in FILLED_CELL.findall(cells):
+            column = self._bytes_letters.get(letters) or self._new_letters(letters)
+            looks = self._looks(look)
+            if kind == b"s":
+                content = self._text(self._strings[int(value)], None, looks)
+                if content is not None:
+                    held[column] = content
+            else:
+                held[column] = self._number(float(value), None, looks)
+        if held:
+            rows[number] = held
+            if b'hidden="1"' in rest or b'hidden="true"' in rest:
+                hidden.add(number)
+
+    def _new_letters(self, letters: bytes) -> int:
+        column = self._bytes_letters[letters] = column_number(letters.decode())
+        return column
+
+    def _looks(self, index: bytes | str | None) -> Format:
+        number = int(index) if index else 0
+        return self._formats[number] if number < len(self._formats) else _PLAIN
 
     def _row(self, element: Any, last: int, rows: dict[int, dict[int, Held]], hidden: set[int]) -> int:
         number = int(element.get("r") or last + 1)
@@ -110,6 +112,8 @@ class SheetReader:
             content = self._content(cell)
             if content is not None:
                 held[column] = content
+                if isinstance(content, Content) and content.nature == "uncalculated":
+                    self._uncalculated.append((number, column))
         if held:
             rows[number] = held
             if _true(element.get("hidden")):
@@ -137,8 +141,7 @@ class SheetReader:
             elif name == "s" and local(child.tag) == "is":
                 inline = text_of(child)
         kind = cell.get("t", "n")
-        index = int(cell.get("s") or 0)
-        looks = self._formats[index] if index < len(self._formats) else _PLAIN
+        looks = self._looks(cell.get("s"))
         if kind == "inlineStr" or (value is None and inline):
             return self._text(inline, formula, looks)
         if value is None:
@@ -170,14 +173,12 @@ class SheetReader:
         return Content(nature="text", text=text, formula=formula or "", struck=looks.struck)
 
     def _number(self, number: float, formula: str | None, looks: Format) -> Held:
-        if not math.isfinite(number):
-            return Content(nature="error", text=str(number), formula=formula or "")
-        if formula is None and looks is _PLAIN:
-            return number
+        if formula is None and not looks.marked:
+            if math.isfinite(number):
+                return number
+            return Content(nature="error", text=str(number))
         if looks.date:
             return Content(nature="date", number=number, text=moment(number, self._epoch_1904), formula=formula or "")
-        if formula is None and not looks.struck and not looks.percent:
-            return number
         return Content(
             nature="number", number=number, formula=formula or "", struck=looks.struck, percent=looks.percent
         )
