@@ -11,6 +11,11 @@ from typing import Any
 
 _EXPORTS = {
     # name: module
+    "johnson": "sheetqc.stats.johnson_system",
+    "yeo_johnson": "sheetqc.stats.transforms",
+    "box_cox": "sheetqc.stats.transforms",
+    "outliers": "sheetqc.stats.outlying",
+    "tolerance_factor": "sheetqc.stats.tolerance",
     "capability": "sheetqc.stats.indices",
     "effective_count": "sheetqc.stats.serial",
     "von_neumann": "sheetqc.stats.serial",
