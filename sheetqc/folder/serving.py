@@ -198,7 +198,9 @@ class _Service:
         self._begin()
         try:
             while not self._wake.ended:
-                if events is not None:
+                if events is not None and self._failures:
+                    events.close()  # what it watches may be gone; it starts anew when the folder is back
+                elif events is not None:
                     events.supervise()
                 self._turn()
                 if self._once and self._is_through():

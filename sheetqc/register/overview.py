@@ -16,7 +16,7 @@ OVERVIEW = "Overview"
 """Name of the sheet."""
 
 _MOST_FIRST, _MOST_SUPPLIERS, _MOST_REASONS = 10, 12, 10
-_WIDTHS = (2, 22, 13, 13, 13, 14, 13, 13, 11, 52, 24)
+_WIDTHS = (2, 22, 13, 13, 13, 14, 13, 13, 11, 52, 32)
 _NO_SUPPLIER = "(no supplier stated)"
 
 _FIRST_COLUMNS = (

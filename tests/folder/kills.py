@@ -68,11 +68,13 @@ def killed(folder: Path, kills: int, seed: int) -> Tally:
         services = [_service(folder, pids, 1 + (tally.kills + n) % 2) for n in range(1 + (rng.random() < 0.2))]
         try:
             _burst(folder, rng, tally)
+            if rng.random() < 0.5:
+                _await_an_answer(folder)  # on a busy machine chance alone would seldom meet a service at work
             time.sleep(rng.uniform(0.0, 1.0))
             _burst(folder, rng, tally)
-            if rng.random() < 0.3:
+            if rng.random() < 0.5:
                 tally.worker_kills += _kill_a_worker(pids, rng)
-            time.sleep(rng.uniform(0.0, 1.6))
+            time.sleep(rng.uniform(0.0, 0.8))
         finally:
             for service in services:
                 service.kill()
@@ -82,7 +84,7 @@ def killed(folder: Path, kills: int, seed: int) -> Tally:
         _check_visible(folder, tally)
         for stale in pids.iterdir():  # their processes end with the service; the numbers may come to mean others
             stale.unlink()
-    tally.under_fire = sum(1 for _ in (folder / "answered").rglob("*.answered.json"))
+    tally.under_fire = _answers(folder)
     serve(folder, answer, once=True, workers=2, say=lambda _: None, after=summarise)
     _check_visible(folder, tally)
     _check_end(folder, tally)
@@ -93,6 +95,17 @@ def _service(folder: Path, pids: Path, workers: int) -> subprocess.Popen[bytes]:
     command = [sys.executable, "-m", "tests.folder.run_service", str(folder), str(workers)]
     environment = {**os.environ, "STANDIN_PIDS": str(pids)}
     return subprocess.Popen(command, cwd=ROOT, env=environment, stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL)
+
+
+def _await_an_answer(folder: Path, seconds: float = 5.0) -> None:
+    """Wait until one more answer is there, for so long at most."""
+    end, before = time.monotonic() + seconds, _answers(folder)
+    while _answers(folder) == before and time.monotonic() < end:
+        time.sleep(0.01)
+
+
+def _answers(folder: Path) -> int:
+    return sum(1 for _ in (folder / "answered").rglob("*.answered.json"))
 
 
 def _burst(folder: Path, rng: random.Random, tally: Tally) -> None:

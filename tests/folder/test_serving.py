@@ -464,8 +464,9 @@ def test_two_services_share_one_folder(layout: Layout, running: Callable[..., Ru
     assert len(files()["answered"]) == 60
 
 
-def test_a_vanished_folder_is_survived(layout: Layout, running: Callable[..., Running]) -> None:
-    service = running(polling=True)
+@pytest.mark.parametrize("polling", [False, True])
+def test_a_vanished_folder_is_survived(layout: Layout, running: Callable[..., Running], polling: bool) -> None:
+    service = running(polling=polling)
     package(layout.inbox / "a.xlsx")
     _await((layout.answered / "a.answered.json").exists)
     away = layout.root.with_name("away")
