@@ -100,7 +100,9 @@ def _service(folder: Path, pids: Path, workers: int) -> subprocess.Popen[bytes]:
 def _await_an_answer(folder: Path, seconds: float = 5.0) -> None:
     """Wait until one more answer is there, for so long at most."""
     end, before = time.monotonic() + seconds, _answers(folder)
-    while _answers(folder) == before and time.monotonic() < end:
+    while (
+        any(p.is_file() for p in (folder / "in").rglob("*")) and _answers(folder) == before and time.monotonic() < end
+    ):
         time.sleep(0.01)
 
 
