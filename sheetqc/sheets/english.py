@@ -78,8 +78,14 @@ ENGLISH: Mapping[str, str] = {
     "table.observed_rate": "Seen, as a rate, ppm",
     "table.quantiles": "X0.135 %, X50, X99.865 %",
     "table.in_use": "▸ ",
-    "table.as_of": "Fits, weights and A² of the models, bounds of Cp and Cpk and the bounds of the expected rate are "
-    "those of the analysis.",
+    "table.claimed": "Claimed by the sender: {index}",
+    "caption.data": "Long dashes: limits of the drawing.",
+    "caption.steady": "Dots: control limits from the scatter within. Diamond: beyond them.",
+    "caption.shape": "Line: the model in use. Triangles: its 0.135 % and 99.865 % points. Thin level line: the stretch "
+    "up to a limit where nothing was measured. Dotted band: where 95 of 100 samples of this size would have each value, "
+    "were the model right. Weights and p are those of the analysis.",
+    "caption.capable": "“At least” and “at most”: each at {confidence} confidence, over everything the values leave "
+    "possible. Of the analysis and not live: bounds of Cp, Cpk and of the expected rate.",
     "table.more_models": "{count} more in the workings at the right",
     # charts
     "chart.time_order": "As measured, in time order{unit}",
@@ -110,6 +116,7 @@ ENGLISH: Mapping[str, str] = {
     "chart.candidate": "candidate models",
     "chart.in_use": "model in use",
     "chart.required": "required",
+    "chart.beyond": "nothing measured",
     "chart.names": "names of the models",
     "alt.time_order": "{id}: {n} values in time order as joined dots, with dashed specification limits and the mean.",
     "alt.location": "{id}: control chart of place with dotted control limits; a diamond marks points beyond them, "

@@ -31,6 +31,7 @@ STYLES: dict[str, dict[str, Any]] = {
     "words": {"text_wrap": True, "valign": "top"},
     "words_small": {"text_wrap": True, "valign": "top", "font_size": 9},
     "words_muted": {"text_wrap": True, "valign": "top", "font_size": 8, "font_color": MUTED},
+    "words_caption": {"text_wrap": True, "valign": "bottom", "font_size": 8, "font_color": MUTED},
     "head": {"font_size": 8, "font_color": MUTED, "bottom": 1, "bottom_color": HAIRLINE, "valign": "bottom"},
     "head_indented": {
         "font_size": 8,

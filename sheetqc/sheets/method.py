@@ -7,10 +7,11 @@ from dataclasses import dataclass
 import sheetqc
 from sheetqc.assessment import Answer
 from sheetqc.finding import quoted
-from sheetqc.sheets.cells import Pen, Placed
+from sheetqc.sheets.cells import Pen
 from sheetqc.sheets.overview import write_finding
 from sheetqc.sheets.page import lines_of
 from sheetqc.sheets.words import Words
+from sheetqc.sheets.workings.quantities import NamedQuantity
 
 METHODS = ("quantiles", "within", "fit", "bound", "a2", "observed", "plot", "control")
 WIDTHS = (190, 150, 110, 110, 90, 90, 90, 90)
@@ -19,12 +20,11 @@ LAST = len(WIDTHS) - 1
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class NamedCell:
-    """A defined name, the quantity it stands for, and its cell."""
+    """A defined name, the quantity it stands for, and the sheet of its cell."""
 
     name: str
-    quantity: str
+    quantity: NamedQuantity
     sheet: str
-    cell: Placed
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -123,7 +123,8 @@ def _write_names(job: MethodJob, row: int) -> int:
     for named in job.names:
         row += 1
         pen.text(row, 0, named.name, "small")
-        pen.text(row, 2, named.quantity, "small")
-        if named.cell.value is not None:
-            pen.formula(row, 4, f"{quoted(named.sheet)}!{named.cell.ref}", named.cell.value, "small")
+        quantity, cell = named.quantity, named.quantity.cell
+        pen.text(row, 2, quantity.label, "small")
+        if cell.value is not None:
+            pen.formula(row, 4, f"{quoted(named.sheet)}!{cell.ref}", cell.value, "small", quantity.number_format)
     return row + 1

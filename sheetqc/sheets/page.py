@@ -13,8 +13,9 @@ from sheetqc.sheets.cells import Pen, Placed
 from sheetqc.sheets.charts import CHARTS, ChartRequest
 from sheetqc.sheets.job import Job
 from sheetqc.sheets.palette import ACCENT_LIGHT, INK, VERDICT
-from sheetqc.sheets.tables import TABLES
+from sheetqc.sheets.tables import TABLES, write_caption
 from sheetqc.sheets.workings.build import Workings, write_workings
+from sheetqc.sheets.workings.quantities import NamedQuantity
 
 QUESTIONS = ("data", "steady", "shape", "capable", "next")
 CHARACTERS_PER_LINE = 56
@@ -34,7 +35,7 @@ class WrittenPage:
 
     sheet: str
     cells: dict[str, Placed]
-    names: tuple[tuple[str, Placed], ...]
+    names: tuple[NamedQuantity, ...]
     assessment_id: str
 
 
@@ -178,7 +179,7 @@ def _write_section(workbook: Workbook, job: Job, work: Workings, row: int, numbe
     if key == "next":
         return _write_findings(job, _write_wide(pen, row, words, WIDE_LINE))
     below = _write_words(pen, row, words)
-    below = TABLES[key](job, work, below)
+    below = write_caption(job, TABLES[key](job, work, below), key)
     pictures = _insert_charts(workbook, job, work, row, key)
     return max(below, pictures) + 1
 

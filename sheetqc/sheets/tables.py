@@ -11,6 +11,9 @@ from sheetqc.sheets.expressions import cut_off, literal
 from sheetqc.sheets.job import Job
 from sheetqc.sheets.workings.build import Workings
 
+CAPTION_LETTERS = 66
+"""About how many letters of a caption fit into the words' columns."""
+
 MOST_SIGNALS = 4
 MOST_POINTS = 8
 SIGNAL_LETTERS = 50
@@ -119,9 +122,23 @@ def capable_table(job: Job, work: Workings, row: int) -> int:
         row = _three(
             job, row, say("table.observed_rate"), ("", "observed_lower", "observed_upper"), work, decimals.RATE
         )
-    pen.sheet.merge_range(row, 0, row + 2, 3, "", pen.formats("words_muted"))
-    pen.text(row, 0, say("table.as_of"), "words_muted")
-    return row + 3
+    claimed = job.assessment.characteristic
+    if claimed.claimed_value is not None:
+        _label(job, row, say("table.claimed", index=claimed.claimed_index).rstrip())
+        pen.number(row, 1, claimed.claimed_value, "figure", "0.00")
+        row += 1
+    return row
+
+
+def write_caption(job: Job, row: int, question: str) -> int:
+    """What the signs in the pictures mean, below the table of a question; gives the row below."""
+    if not job.has_spread:
+        return row
+    text = job.say(f"caption.{question}", confidence=job.say.percent(job.assessment.confidence))
+    lines = -(-len(text) // CAPTION_LETTERS)
+    job.pen.sheet.merge_range(row, 0, row + lines - 1, 3, "", job.pen.formats("words_caption"))
+    job.pen.text(row, 0, text, "words_caption")
+    return row + lines
 
 
 def _three(job: Job, row: int, label: str, keys: tuple[str, ...], work: Workings, number_format: str) -> int:

@@ -8,6 +8,7 @@ from pathlib import Path
 from xlsxwriter import Workbook
 
 from sheetqc.assessment import Answer
+from sheetqc.finding import quoted
 from sheetqc.sheets.cells import FastWorksheet, Pen
 from sheetqc.sheets.decimals import decimals_of
 from sheetqc.sheets.formats import FONT, SIZE, Formats
@@ -63,7 +64,7 @@ def write(answer: Answer, study: Study, names: Sequence[str], into: Path, *, alo
             write_page(workbook, _job(answer, index, pens[index + 1], say, alone), names[0])
             for index in range(len(answer.assessments))
         )
-        named = _define_names(workbook, pages, say)
+        named = _define_names(workbook, pages)
         write_overview(OverviewJob(answer=answer, pages=pages, pen=pens[0], say=say, method=names[-1], alone=alone))
         write_method(MethodJob(answer=answer, names=named, pen=pens[-1], say=say, alone=alone))
 
@@ -75,13 +76,11 @@ def _job(answer: Answer, index: int, pen: Pen, say: Words, alone: bool) -> Job:
     return Job(answer=answer, assessment=found, pen=pen, say=say, decimals=shown, alone=alone)
 
 
-def _define_names(workbook: Workbook, pages: Sequence[WrittenPage], say: Words) -> tuple[NamedCell, ...]:
+def _define_names(workbook: Workbook, pages: Sequence[WrittenPage]) -> tuple[NamedCell, ...]:
     named = []
     for page, safe in zip(pages, safe_ids([page.assessment_id for page in pages]), strict=True):
-        for quantity, cell in page.names:
-            name = defined_name(safe, quantity)
-            sheet = "'" + page.sheet.replace("'", "''") + "'"
-            workbook.define_name(name, f"={sheet}!{cell.ref}")
-            named.append(NamedCell(name=name, quantity=quantity, sheet=page.sheet, cell=cell))
-    del say
+        for quantity in page.names:
+            name = defined_name(safe, quantity.name)
+            workbook.define_name(name, f"={quoted(page.sheet)}!{quantity.cell.ref}")
+            named.append(NamedCell(name=name, quantity=quantity, sheet=page.sheet))
     return tuple(named)

@@ -7,6 +7,7 @@ from typing import Any
 
 from xlsxwriter import Workbook
 
+from sheetqc.finding import quoted
 from sheetqc.sheets import layout
 from sheetqc.sheets.axis import Axis
 from sheetqc.sheets.cells import Column
@@ -102,16 +103,12 @@ class Drawing:
 
     def cells(self, column: Column) -> str:
         """A column as error bars want it."""
-        return f"={_quoted(self._sheet)}!{column.ref}"
+        return f"={quoted(self._sheet)}!{column.ref}"
 
     def axes(self, x: Options, y: Options) -> None:
         """Both axes."""
         self.chart.set_x_axis(x)
         self.chart.set_y_axis(y)
-
-
-def _quoted(name: str) -> str:
-    return "'" + name.replace("'", "''") + "'"
 
 
 def numeric(axis: Axis, *, grid: bool = True, title: str = "", **more: Any) -> Options:

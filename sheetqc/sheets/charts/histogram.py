@@ -3,11 +3,27 @@
 from __future__ import annotations
 
 from sheetqc.sheets.axis import Axis, nice_step
-from sheetqc.sheets.charts.common import LIMIT, NO_LINE, NO_MARKER, Drawing, dot, label_at_end, numeric, solid
+from sheetqc.sheets.charts.common import (
+    LIMIT,
+    NO_LINE,
+    NO_MARKER,
+    Drawing,
+    Options,
+    dot,
+    font,
+    label_at_end,
+    numeric,
+    solid,
+)
 from sheetqc.sheets.charts.request import ChartRequest
-from sheetqc.sheets.palette import ACCENT, BAR, INK
+from sheetqc.sheets.palette import ACCENT, BAR, INK, MUTED
 
 POINTS_PER_PIXEL = 0.75
+
+LABELLED = 0.15
+"""Share of the axis from which a stretch without values is named."""
+
+ARROW = {"color": MUTED, "width": 0.75}
 
 OVERLAP = 1.6
 """Pixels by which stripes overlap, lest rounding leaves gaps."""
@@ -42,6 +58,7 @@ def histogram(request: ChartRequest) -> Drawing | None:
         label = label_at_end(say(f"chart.{key}"), position="above")
         drawing.line(line.x, line.y, LIMIT, name=say(f"chart.{key}"), label=label)
     _draw_quantiles(request, drawing, axis, top)
+    _draw_reach(request, drawing, axis, top)
     drawing.axes(numeric(axis, grid=False), numeric(top, num_format="0%"))
     return drawing
 
@@ -60,6 +77,22 @@ def _draw_quantiles(request: ChartRequest, drawing: Drawing, axis: Axis, top: Ax
         if key in work.quantities:
             line = work.lines.upright(say(f"chart.{key}"), work.quantities[key], axis, 0.0, 0.07 * top.maximum)
             drawing.points(line.x.part(0, 1), line.y.part(0, 1), dot(INK, 6, "triangle"), name=say(f"chart.{key}"))
+
+
+def _draw_reach(request: ChartRequest, drawing: Drawing, axis: Axis, top: Axis) -> None:
+    """How far each limit lies beyond anything measured."""
+    work, text = request.workings, request.say("chart.beyond")
+    if "minimum" not in work.quantities:
+        return
+    for key, cell, upwards in (("minimum", work.inputs.lower, False), ("maximum", work.inputs.upper, True)):
+        line = work.lines.reach(text, work.quantities[key], cell, 0.1 * top.maximum, upwards=upwards)
+        long = abs(line.x.at(2).number - line.x.at(0).number) > LABELLED * axis.length
+        drawing.line(line.x, line.y, ARROW, name=text, label=_label_in_the_middle(text) if long else None)
+
+
+def _label_in_the_middle(text: str) -> Options:
+    look, gone = font(8, MUTED), {"delete": True}
+    return {"value": True, "custom": [gone, {"value": text, "font": look}, gone], "position": "above", "font": look}
 
 
 def _top(request: ChartRequest) -> Axis:

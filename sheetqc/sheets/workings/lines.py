@@ -56,6 +56,20 @@ class Lines:
         value = cell.number if cell.is_number else NA
         return self._line(label, ([constant(first), constant(last)], [first, last]), ([y, y], [value, value]))
 
+    def reach(self, label: str, end: Placed, limit: Placed, height: float, *, upwards: bool) -> Line:
+        """A level line from the last value to a limit beyond it, with a point in the middle; else not drawn."""
+        sign = ">" if upwards else "<"
+        beyond = f"AND(ISNUMBER({limit.ref}),N({limit.ref}){sign}{end.ref})"
+        drawn = limit.is_number and (limit.number > end.number if upwards else limit.number < end.number)
+        far = f"IF({beyond},{limit.ref},{end.ref})"
+        value = limit.number if drawn else end.number
+        y = f"IF({beyond},{constant(height)},NA())"
+        return self._line(
+            label,
+            ([end.ref, f"({end.ref}+{far})/2", far], [end.number, (end.number + value) / 2, value]),
+            ([y] * 3, [height if drawn else NA] * 3),
+        )
+
     def anchors(self, label: str, x: float, cells: list[Placed]) -> Line:
         """Points at one place, each at the height that a cell holds: where labels are hung."""
         return self._line(

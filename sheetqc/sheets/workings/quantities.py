@@ -2,12 +2,24 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+
 from sheetqc.sheets.cells import Placed, Value
 from sheetqc.sheets.job import Job
 from sheetqc.sheets.workings.ground import FIRST, Ground
 
 HEADS = ("quantity", "live", "analysed", "name")
 WIDTHS = (210, 96, 96, 150)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class NamedQuantity:
+    """A quantity with the last part of its defined name, its label, cell and number format."""
+
+    name: str
+    label: str
+    cell: Placed
+    number_format: str
 
 
 class Quantities:
@@ -26,8 +38,8 @@ class Quantities:
         )
         self._row = FIRST
         self._placed: dict[str, Placed] = {}
-        self.names: list[tuple[str, Placed]] = []
-        """Quantities that get a defined name: (quantity, cell)."""
+        self.names: list[NamedQuantity] = []
+        """Quantities that get a defined name."""
 
     def __getitem__(self, key: str) -> Placed:
         return self._placed[key]
@@ -63,13 +75,14 @@ class Quantities:
 
     def _added(self, key: str, placed: Placed, number_format: str, analysed: Value | None, name: str) -> Placed:
         pen = self._job.pen
-        pen.text(self._row, self._column, self._job.say(f"quantity.{key}"), "small")
+        label = self._job.say(f"quantity.{key}")
+        pen.text(self._row, self._column, label, "small")
         if isinstance(analysed, str):
             pen.text(self._row, self._column + 2, analysed, "small")
         elif analysed is not None:
             pen.number(self._row, self._column + 2, analysed, "small", number_format)
         if name:
-            self.names.append((name, placed))
+            self.names.append(NamedQuantity(name=name, label=label, cell=placed, number_format=number_format))
         self._placed[key] = placed
         self._row += 1
         return placed

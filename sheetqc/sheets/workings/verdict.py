@@ -86,7 +86,9 @@ def _add_line(job: Job, quantities: Quantities, inputs: Inputs) -> None:
         (literal(say("band.required")), say("band.required")),
         _two_decimals(inputs.requirement),
     )
-    quantities.add("line", "&".join(p[0] for p in pieces), "".join(p[1] for p in pieces))
+    nothing = say("band.nothing")
+    formula = f"IF(ISNUMBER({estimate.ref}),{'&'.join(p[0] for p in pieces)},{literal(nothing)})"
+    quantities.add("line", formula, "".join(p[1] for p in pieces) if estimate.is_number else nothing)
 
 
 def _two_decimals(cell: Placed) -> tuple[str, str]:
