@@ -14,8 +14,9 @@ from sheetqc import vocabulary
 from sheetqc.intake.container import make_of
 from sheetqc.intake.ooxml import Format, Package, SheetPart, formats, local, parsed, shared_strings
 from sheetqc.intake.othermake import OtherBook
-from sheetqc.intake.sheet import Sheet
+from sheetqc.intake.sheet import Area, Sheet
 from sheetqc.intake.sheetxml import SheetReader
+from sheetqc.intake.tables import column_of
 
 _OTHER_TEXT = re.compile(rb"inlineStr|t=[\"']str[\"']")
 
@@ -32,6 +33,9 @@ class Book(Protocol):
 
     def sheet(self, name: str) -> Sheet | None:
         """A sheet by name, without regard to case; None when there is none."""
+
+    def table_column(self, table: str, column: str) -> tuple[str, Area] | None:
+        """Sheet name and cells of a table's column, without heading and totals; None when there is none."""
 
 
 @dataclass(slots=True)
@@ -58,6 +62,10 @@ class OoxmlBook:
         wanted = name.strip().casefold()
         part = next((p for p in self.parts if p.name.strip().casefold() == wanted), None)
         return None if part is None else self._read(part)
+
+    def table_column(self, table: str, column: str) -> tuple[str, Area] | None:
+        """Sheet name and cells of a table's column, without heading and totals; None when there is none."""
+        return column_of(self.package, self.parts, table, column)
 
     def _may_hold_tag(self, part: SheetPart, pattern: re.Pattern[bytes] | None) -> bool:
         """A quick look at the bytes, so that a large sheet without a tag costs no parsing."""

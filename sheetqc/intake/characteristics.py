@@ -10,7 +10,7 @@ from sheetqc.errors import NothingToAnswer
 from sheetqc.finding import Cell
 from sheetqc.intake.blocks import Block
 from sheetqc.intake.content import Content, Held, is_text, nature, shown
-from sheetqc.intake.doubts import Doubts, listed
+from sheetqc.intake.doubts import Doubts, counted, listed, places
 from sheetqc.intake.entry import EntryReader
 from sheetqc.intake.figures import decimal_mark
 from sheetqc.intake.heading import HeadingRow, heading_row
@@ -18,6 +18,9 @@ from sheetqc.intake.naming import folded
 from sheetqc.study import Characteristic, Limits
 
 LIMITS = ("lower", "upper", "nominal", "natural_lower", "natural_upper")
+Entries = dict[str, tuple[Held, Cell]]
+"""What was entered for a characteristic, by field, with its cell."""
+
 _NUMBERS = (*LIMITS, "requirement", "resolution", "claimed_value", "subgroup_size")
 _TEXTS = ("name", "unit", "critical_class", "claimed_index", "note")
 
@@ -67,6 +70,7 @@ def _of_block(block: Block, doubts: Doubts) -> Iterator[Characteristic]:
         columns["id"] = columns.pop("name")
     texts = [shown(h) for r in headings.data_rows() for h in block.sheet.rows[r].values() if is_text(h)]
     entries = EntryReader(decimal_mark(texts), doubts)
+    _tell_hidden(headings, columns, doubts)
     for row in headings.data_rows():
         held = {
             field: (content, block.sheet.cell(row, column))
@@ -74,7 +78,7 @@ def _of_block(block: Block, doubts: Doubts) -> Iterator[Characteristic]:
             if (content := block.sheet.at(row, column)) is not None
         }
         if "id" in held and not _repeats_heading(held, columns, headings):
-            yield _characteristic(held, entries, doubts)
+            yield characteristic_of(held, entries, doubts)
         elif "id" not in held and any(field in LIMITS or field == "name" for field in held):
             cell = block.sheet.cell(row, columns["id"])
             doubts.add(
@@ -84,6 +88,23 @@ def _of_block(block: Block, doubts: Doubts) -> Iterator[Characteristic]:
                 "it was not used. Give it an Id.",
                 (cell,),
             )
+
+
+def _tell_hidden(headings: HeadingRow, columns: dict[str, int], doubts: Doubts) -> None:
+    sheet = headings.block.sheet
+    hidden = [
+        sheet.cell(row, columns["id"])
+        for row in headings.data_rows()
+        if row in sheet.hidden_rows and sheet.at(row, columns["id"]) is not None
+    ]
+    if hidden:
+        doubts.add(
+            "hidden-characteristics",
+            "caution",
+            f"{counted(len(hidden), 'characteristic')} ({places(hidden)}) on hidden rows, judged all the same. Delete "
+            "the rows if they do not belong to the study.",
+            hidden,
+        )
 
 
 def no_heading_row(block: Block, doubts: Doubts) -> None:
@@ -101,7 +122,7 @@ def no_heading_row(block: Block, doubts: Doubts) -> None:
     )
 
 
-def _repeats_heading(held: dict[str, tuple[Held, Cell]], columns: dict[str, int], headings: HeadingRow) -> bool:
+def _repeats_heading(held: Entries, columns: dict[str, int], headings: HeadingRow) -> bool:
     same = [f for f, (content, _) in held.items() if shown(content).strip() == headings.texts.get(columns[f])]
     return len(same) == len(held)
 
@@ -141,10 +162,11 @@ def _columns(headings: HeadingRow, doubts: Doubts) -> dict[str, int]:
     return columns
 
 
-def _characteristic(held: dict[str, tuple[Held, Cell]], entries: EntryReader, doubts: Doubts) -> Characteristic:
+def characteristic_of(held: Entries, entries: EntryReader, doubts: Doubts, unit: str = "") -> Characteristic:
+    """The characteristic that entries describe; `unit` is its unit where the entries do not hold one."""
     identity = " ".join(shown(held["id"][0]).split())
     values: dict[str, Any] = {f: shown(held[f][0]).strip() for f in _TEXTS if f in held and _readable(held[f][0])}
-    unit = values.get("unit", "")
+    unit = values.get("unit", unit)
     numbers: dict[str, Any] = {}
     for field in _NUMBERS:
         if field in held:

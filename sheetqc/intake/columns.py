@@ -116,6 +116,9 @@ def _tell_unlisted(headings: HeadingRow, unlisted: list[int], names: Names, doub
         met = (
             f"is headed “{text}”, which is not the Id or Name of a listed characteristic" if text else "has no heading"
         )
+        candidates = names.candidates(text)
+        if candidates:
+            met = f"is headed “{text}”, which may mean {listed(candidates).replace(' and ', ' or ')}"
         doubts.add(
             "value-column-without-characteristic",
             "caution",

@@ -55,7 +55,7 @@ def pieces_of(block: Block, characteristics: Sequence[Characteristic], doubts: D
     texts = (shown(h) for entries in raw.values() for _, _, h in entries if h.__class__ is not float and is_text(h))
     decimal = decimal_mark(texts)
     by_id = {c.id: c for c in characteristics}
-    return [_piece(columns, by_id[i], entries, decimal, doubts) for i, entries in raw.items()]
+    return [piece_of(columns, by_id[i], entries, decimal, doubts) for i, entries in raw.items()]
 
 
 def _known(text: str, names: Names) -> bool:
@@ -134,7 +134,8 @@ def _tell_hidden_cells(what: str, count: int, hidden: Sequence[Cell], doubts: Do
         )
 
 
-def _piece(columns: Columns, asked: Characteristic, raw: Sequence[Raw], decimal: str | None, doubts: Doubts) -> Piece:
+def piece_of(columns: Columns, asked: Characteristic, raw: Sequence[Raw], decimal: str | None, doubts: Doubts) -> Piece:
+    """The values of one characteristic with their labels; what is noteworthy in its cells is told."""
     piece = Piece(block=columns.block, characteristic=asked.id)
     takings = _takings(columns, asked, raw, decimal)
     plain = {column for column, taking in takings.items() if taking.scale.heading_factor == 1.0}

@@ -43,6 +43,12 @@ class Names:
             or self._beginning(bare)
         )
 
+    def candidates(self, text: str) -> tuple[str, ...]:
+        """The Ids of all characteristics that a text may mean, where it means more than one."""
+        bare = vocabulary.key(without_unit(text)[0])
+        found = [c.id for c in self._characteristics if bare and bare in (vocabulary.key(c.id), vocabulary.key(c.name))]
+        return tuple(found) if len(found) > 1 else ()
+
     def _unique(self, wanted: str, form: Callable[[Characteristic], str]) -> str | None:
         if not wanted:
             return None

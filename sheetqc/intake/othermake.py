@@ -55,6 +55,10 @@ class OtherBook:
         found = next((n for n in self._book.sheet_names if n.strip().casefold() == wanted), None)
         return None if found is None else self._read(found, True)
 
+    def table_column(self, table: str, column: str) -> tuple[str, Area] | None:
+        """Tables are not known in these makes."""
+        return None
+
     def _read(self, name: str, visible: bool) -> Sheet:
         source = self._book.get_sheet_by_name(name)
         rows: dict[int, dict[int, Held]] = {}

@@ -22,6 +22,8 @@ from sheetqc.intake.doubts import Doubts, listed
 from sheetqc.intake.gauge import gauge_studies_of
 from sheetqc.intake.header import header_of
 from sheetqc.intake.measurements import pieces_of
+from sheetqc.intake.places import placed_in, placed_pieces, with_placed
+from sheetqc.intake.references import References
 from sheetqc.intake.samples import samples_of
 from sheetqc.study import Source, Study
 from sheetqc.vocabulary import TAGS
@@ -40,7 +42,7 @@ def read(path: Path) -> Study:
         source = source_of(path)
         blocks = _blocks(book, doubts)
         try:
-            return _study(source, blocks, doubts)
+            return _study(source, blocks, References(book), doubts)
         except NothingToAnswer as error:
             raise NothingToAnswer(
                 error.met, expected=error.expected, advice=error.advice, file=path, cell=error.cell
@@ -110,14 +112,17 @@ def _blocks(book: Book, doubts: Doubts) -> list[Block]:
     return blocks
 
 
-def _study(source: Source, blocks: Sequence[Block], doubts: Doubts) -> Study:
+def _study(source: Source, blocks: Sequence[Block], references: References, doubts: Doubts) -> Study:
     by_tag = {tag: [b for b in blocks if b.tag == tag] for tag in TAGS}
     header = header_of(by_tag["qc:study"], doubts)
     characteristics = characteristics_of(by_tag["qc:characteristics"], doubts)
+    placed = placed_in(by_tag["qc:places"], references, doubts)
+    characteristics = with_placed(characteristics, placed, doubts)
     counts = counts_of(by_tag["qc:counts"], doubts)
     if not counts or characteristics or by_tag["qc:characteristics"] or by_tag["qc:measurements"]:
         require(characteristics, by_tag["qc:characteristics"], doubts)
     pieces = [piece for b in by_tag["qc:measurements"] for piece in pieces_of(b, characteristics, doubts)]
+    pieces += placed_pieces(placed, characteristics, doubts)
     samples = samples_of(characteristics, pieces, doubts)
     return Study(
         source=source,

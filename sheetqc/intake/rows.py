@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from sheetqc import vocabulary
 from sheetqc.finding import Cell
@@ -50,7 +50,7 @@ def sorted_rows(headings: HeadingRow, columns: Columns, doubts: Doubts) -> list[
         elif any(c in held for c in values):
             kept.append(number)
     _tell(repeated, summaries, doubts)
-    return _labelled(columns, kept)
+    return _filled_down(_labelled(columns, kept), columns, doubts)
 
 
 def _value_columns(columns: Columns) -> list[int]:
@@ -136,6 +136,27 @@ def _labelled(columns: Columns, numbers: Sequence[int]) -> list[Row]:
             )
         )
     return rows
+
+
+def _filled_down(rows: list[Row], columns: Columns, doubts: Doubts) -> list[Row]:
+    """Rows without a subgroup label take the one above: people often write a label in its first row only."""
+    bare = [row for row in rows if not row.subgroup]
+    if "subgroup" not in columns.fields or not bare or len(bare) == len(rows):
+        return rows
+    label = ""
+    filled: list[Row] = []
+    for row in rows:
+        label = row.subgroup or label
+        filled.append(replace(row, subgroup=label))
+    cells = [columns.block.sheet.cell(row.number, columns.fields["subgroup"]) for row in bare]
+    doubts.add(
+        "subgroup-filled-down",
+        "note",
+        f"{counted(len(cells), 'row')} without a subgroup ({places(cells)}) were counted to the subgroup above. Fill "
+        "the column in if that is wrong.",
+        cells,
+    )
+    return filled
 
 
 def _label(columns: Columns, field: str, row: int) -> str:

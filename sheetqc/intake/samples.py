@@ -3,10 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import replace
 from itertools import chain
 
 from sheetqc.intake.doubts import Doubts, listed
 from sheetqc.intake.measurements import Piece
+from sheetqc.intake.order import first_backward
 from sheetqc.study import Characteristic, Sample
 
 
@@ -20,10 +22,28 @@ def samples_of(
         if not any(p.values for p in own):
             _tell_missing(asked, own, doubts)
         if own:
-            samples.append(_sample(asked, own))
+            samples.append(_in_order(_sample(asked, own), doubts))
         if len([p for p in own if p.values]) > 1:
             _tell_several(asked, own, doubts)
     return tuple(samples)
+
+
+def _in_order(sample: Sample, doubts: Doubts) -> Sample:
+    """The sample, with its order called unknown where its times run backward."""
+    place = None if sample.times is None else first_backward(sample.times)
+    if place is None or sample.times is None:
+        return sample
+    cell = sample.cells[place]
+    doubts.add(
+        "not-in-time-order",
+        "caution",
+        f"The rows of {sample.characteristic} do not stand in time order: beside {cell} stands {sample.times[place]}, "
+        "earlier than the row above it. Sort the rows by time, the oldest first, so that it can be seen whether the "
+        "process was steady.",
+        (cell,),
+        of=sample.characteristic,
+    )
+    return replace(sample, order_known=False)
 
 
 def _tell_missing(asked: Characteristic, own: Sequence[Piece], doubts: Doubts) -> None:

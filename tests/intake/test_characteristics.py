@@ -181,7 +181,8 @@ def test_two_blocks_of_characteristics_are_joined(tmp_path: Path) -> None:
     assert [(c.id, c.limits.upper) for c in study.characteristics] == [("D12", 13), ("F7", 5)]
 
 
-def test_hidden_row_of_a_characteristic_is_read(tmp_path: Path) -> None:
+def test_hidden_row_of_a_characteristic_is_read_and_told(tmp_path: Path) -> None:
     spec = Page(table("A1", [["qc:characteristics"], ["Id", "USL"], ["D12", 13]]), hidden_rows=(3,))
     study = study_of(tmp_path, table("A1", [["qc:measurements"], ["D12"], [12]]), spec)
     assert [c.id for c in study.characteristics] == ["D12"]
+    assert cells(finding(study, "hidden-characteristics")) == ["'Spec'!A3"]

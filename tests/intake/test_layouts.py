@@ -4,10 +4,12 @@ from __future__ import annotations
 
 import datetime
 from pathlib import Path
+from typing import Any
 
 import pytest
 
 from sheetqc import intake
+from sheetqc.study import Study
 from tests.intake.building import (
     CHARACTERISTICS,
     VALUES,
@@ -374,3 +376,57 @@ def test_headings_in_other_languages(tmp_path: Path) -> None:
     assert study.samples[0].streams == ("3",)
     assert study.samples[0].left_out[0].reason == "Grat"
     assert codes(study) == []
+
+
+def _timed(path: Path, times: list[Any]) -> Study:
+    entries = {"A1": "qc:measurements", "A2": "Time", "B2": "D12", **column("A3", times)}
+    return study_of(path, entries | column("B3", [12 + i / 100 for i in range(len(times))]))
+
+
+@pytest.mark.parametrize(
+    "times",
+    [
+        ["2026-03-12 06:00", "2026-03-12 07:00", "2026-03-12 06:59"],
+        ["12.03.2026", "13.03.2026", "01.03.2026"],
+        ["3/12/2026 6:00", "3/13/2026 6:00", "3/12/2026 7:00"],
+        [3, 4, 2],
+    ],
+)
+def test_rows_out_of_time_order_are_told(tmp_path: Path, times: list[Any]) -> None:
+    study = _timed(tmp_path, times)
+    assert study.samples[0].order_known is False
+    found = finding(study, "not-in-time-order", "D12")
+    assert cells(found) == ["'Run'!B5"]
+
+
+@pytest.mark.parametrize(
+    "times",
+    [
+        ["2026-03-12 06:00", "2026-03-12 06:00", "2026-03-13 05:00"],
+        ["22:00", "23:00", "06:00"],
+        ["31.01.2026", "01.02.2026", "02.02.2026"],
+        ["01/02/2026", "02/01/2026", "03/01/2026"],
+        ["early", "late", "early"],
+        ["2026-03-12", None, "2026-03-13"],
+    ],
+)
+def test_rows_that_may_stand_in_time_order_bring_no_doubt(tmp_path: Path, times: list[Any]) -> None:
+    study = _timed(tmp_path, times)
+    assert study.samples[0].order_known is True
+    assert codes(study) == ["no-values"]
+
+
+def test_subgroup_written_in_its_first_row_only(tmp_path: Path) -> None:
+    rows = [["Subgroup", "D12"], ["a", 12], [None, 12.1], ["b", 12.2], [None, 12.3]]
+    study = study_of(tmp_path, table("A1", [["qc:measurements"], *rows]))
+    assert study.samples[0].subgroups == ("a", "a", "b", "b")
+    assert cells(finding(study, "subgroup-filled-down")) == ["'Run'!A4", "'Run'!A6"]
+
+
+def test_heading_that_may_mean_two_characteristics(tmp_path: Path) -> None:
+    spec = table("A1", [["qc:characteristics"], ["Id", "Name", "USL"], ["D1", "Bore", 13], ["D2", "Bore", 14]])
+    study = study_of(tmp_path, table("A1", [["qc:measurements"], ["Bore", "D1"], [12, 12.5]]), spec)
+    assert study.samples[0].values == (12.5,)
+    found = finding(study, "value-column-without-characteristic")
+    assert cells(found) == ["'Run'!A2"]
+    assert "D1 or D2" in found.text
