@@ -50,7 +50,7 @@ def shaft() -> Asked:
             "Time": times("2026-02-09T06:00", 7, count),
             "D12": read(several(count, lambda: d.normal(12.0004, 0.0019)), "0.0005"),
             "RO3": read(several(count, lambda: ro.rayleigh(4.6)), "0.1"),
-            "RA2": read(several(count, lambda: ra.lognormal(0.35, 0.2)), "0.01"),
+            "RA2": read(several(count, lambda: ra.lognormal(0.35, 0.205)), "0.01"),
         },
         decimals={"D12": 4, "RO3": 1, "RA2": 2},
     )
@@ -140,7 +140,7 @@ def shaft_seal_leak() -> Asked:
             "Lot": "26-0120",
             "Date": datetime.date(2026, 1, 30),
             "Prepared by": "I. Sorrelby",
-            "Requirement": 1.0,
+            "Requirement": 1.33,
             "Note": "Water at 6 bar, 20 degrees",
         },
         characteristics=[
@@ -170,7 +170,7 @@ def burst_pressure() -> Asked:
             {"Id": "BP1", "Name": "Burst pressure", "Unit": "bar", "LSL": 16.0, "Kind": "burst pressure"}
             | {"Resolution": 0.1, "Class": "critical", "Note": "Destructive: each part is tested once"},
         ],
-        columns={"No": list(range(1, 41)), "BP1": read(several(40, lambda: bp.weibull(31.0, 11.0)), "0.1")},
+        columns={"No": list(range(1, 41)), "BP1": read(several(40, lambda: bp.weibull(31.0, 15.0)), "0.1")},
         decimals={"BP1": 1},
     )
 
@@ -259,7 +259,7 @@ def bearing_bush() -> Asked:
         columns={
             "Lfd Nr": list(range(1, count + 1)),
             "D31": read(several(count, lambda: d.normal(16.0003, 0.0021)), "0.0005"),
-            "L7": read(several(count, lambda: length.normal(21.992, 0.02)), "0.005"),
+            "L7": read(several(count, lambda: length.normal(21.992, 0.021)), "0.005"),
         },
         decimals={"D31": 4, "L7": 3},
     )
@@ -345,7 +345,7 @@ def coupling_hub() -> Asked:
         columns={
             "Piece": list(range(1, count + 1)),
             "D12": read(several(count, lambda: k.normal(12.0094, 0.0013)), "0.0005"),
-            "BR1": read(several(count, lambda: b.normal(4.0025, 0.0079)), "0.001"),
+            "BR1": read(several(count, lambda: b.normal(4.0025, 0.0072)), "0.001"),
         },
         decimals={"D12": 4, "BR1": 3},
     )
