@@ -7,7 +7,7 @@ from collections.abc import Iterator
 from lxml import etree
 
 from sheetqc.package.additions import NewPart, Transfer, new_table_names, renaming
-from sheetqc.package.contenttypes import LIST, METADATA, RELATIONSHIP_LIST, STYLES
+from sheetqc.package.contenttypes import LIST, METADATA, RELATIONSHIP_LIST, STRINGS, STYLES
 from sheetqc.package.dialect import relationship, strict_namespaces
 from sheetqc.package.earlier import Removed, take_out_earlier_answer
 from sheetqc.package.mentions import mentions_own_names
@@ -97,7 +97,7 @@ class Adding:
         new_names = {s.name.casefold(): n for s, n in zip(extra.sheets, names, strict=True) if s.name != n}
         fitting = Fitting(
             styles=styles,
-            strings=SharedStrings(self._optional_root("sharedStrings")),
+            strings=self._strings(),
             sheet_names=new_names,
             table_names=self._table_names(),
             days=BETWEEN_DATE_SYSTEMS * (extra.date_1904 - book.date_1904),
@@ -140,9 +140,18 @@ class Adding:
         self._new.append(NewPart(name=name, content=content, content_type=content_type))
         self._book.links.add(relationship(kind, strict=self._book.strict), name)
 
-    def _optional_root(self, kind: str) -> Element | None:
-        part = self._extra.part(kind)
-        return None if part is None else self._extra.package.root(part)
+    def _strings(self) -> SharedStrings | None:
+        """The strings that cells have to hold themselves; None where the copy can share them as the additions do."""
+        theirs = self._extra.part("sharedStrings")
+        if theirs is None:
+            return None
+        if self._book.links.by_kind("sharedStrings") is not None:
+            return SharedStrings(self._extra.package.root(theirs))
+        self._link("sharedStrings.xml", "sharedStrings", self._dialect(self._extra.package.content(theirs)), STRINGS)
+        return None
+
+    def _dialect(self, content: bytes) -> bytes:
+        return strict_namespaces(content) if self._book.strict else content
 
     def _cell_metadata(self) -> int | None:
         """Index in the copy of the metadata that formulas that spill refer to; None when they go without it."""
@@ -152,9 +161,7 @@ class Adding:
         mine = self._book.part("sheetMetadata")
         if mine is not None:
             return _spilling(self._book.package.root(mine))
-        content = self._extra.package.content(theirs)
-        content = strict_namespaces(content) if self._book.strict else content
-        self._link("metadata.xml", "sheetMetadata", content, METADATA)
+        self._link("metadata.xml", "sheetMetadata", self._dialect(self._extra.package.content(theirs)), METADATA)
         return 1
 
     def _table_roots(self, book: Workbook) -> list[Element]:

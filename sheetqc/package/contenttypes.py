@@ -22,6 +22,7 @@ WORKBOOK_KINDS = {
     "application/vnd.ms-excel.sheet.binary.macroenabled.main": "xlsb",
 }
 STYLES = f"{_SPREADSHEET}styles+xml"
+STRINGS = f"{_SPREADSHEET}sharedStrings+xml"
 METADATA = f"{_SPREADSHEET}sheetMetadata+xml"
 WORKSHEET = f"{_SPREADSHEET}worksheet+xml"
 RELATIONSHIP_LIST = "application/vnd.openxmlformats-package.relationships+xml"

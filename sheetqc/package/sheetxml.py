@@ -25,7 +25,7 @@ class Fitting:
     """What changes on the way from the additions into the copy."""
 
     styles: StyleMap
-    strings: SharedStrings
+    strings: SharedStrings | None  # None: cells go on sharing them
     sheet_names: Mapping[str, str] = field(default_factory=dict)  # new by old, case-folded
     table_names: Mapping[str, str] = field(default_factory=dict)  # new by old, case-folded
     days: int = 0  # added to every number that shows a date
@@ -79,7 +79,7 @@ def fit_names(root: Element, fitting: Fitting) -> None:
 def _fit_cell(cell: Element, fitting: Fitting) -> None:
     old = whole(cell.get("s"), 0)
     cell.set("s", str(fitting.format(old)))
-    if cell.get("t") == "s":
+    if cell.get("t") == "s" and fitting.strings is not None:
         fitting.strings.tell_inline(cell)
     elif fitting.days and old in fitting.styles.dates:
         _shift(cell, fitting.days)
