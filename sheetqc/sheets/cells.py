@@ -154,8 +154,8 @@ def plain(value: Value) -> Value:
 
 
 def shortened(value: Value) -> Value:
-    """A stored value with twelve digits: enough to compare, and a third of the bytes of a long one less."""
-    return float(f"{value:.12g}") if type(value) is float else value
+    """A stored value with eleven digits: enough to compare, and a third of the bytes of a long one less."""
+    return float(f"{value:.11g}") if type(value) is float else value
 
 
 def cut(value: float) -> float:

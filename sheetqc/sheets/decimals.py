@@ -10,7 +10,7 @@ from decimal import Decimal
 INDEX = "0.00"
 MOMENT = "0.00;-0.00;0.00"
 """Looks like an index but is rounded, not cut off."""
-PROBABILITY = "0.000"
+PROBABILITY = '[<0.001]"< 0.001";0.000'
 RATE = '[<0.01]"< 0.01";[<10]0.00;#,##0'
 SHARE = "0%"
 COUNT = "0"

@@ -76,14 +76,14 @@ ENGLISH: Mapping[str, str] = {
     "table.expected": "Expected outside, ppm",
     "table.observed": "Seen outside, of {n}",
     "table.observed_rate": "Seen, as a rate, ppm",
-    "table.quantiles": "X0.135 %, X50, X99.865 %",
+    "table.quantiles": "X0.135, X50, X99.865",
     "table.in_use": "▸ ",
     "table.claimed": "Claimed by the sender: {index}",
     "caption.data": "Long dashes: limits of the drawing.",
     "caption.steady": "Dots: control limits from the scatter within. Diamond: beyond them.",
     "caption.shape": "Line: the model in use. Triangles: its 0.135 % and 99.865 % points. Thin level line: the stretch "
-    "up to a limit where nothing was measured. Dotted band: where 95 of 100 samples of this size would have each value, "
-    "were the model right. Weights and p are those of the analysis.",
+    "up to a limit where nothing was measured. Dotted band: where 95 of 100 samples of this size would have each "
+    "value, were the model right. Weights and p are those of the analysis.",
     "caption.capable": "“At least” and “at most”: each at {confidence} confidence, over everything the values leave "
     "possible. Of the analysis and not live: bounds of Cp, Cpk and of the expected rate.",
     "table.more_models": "{count} more in the workings at the right",
@@ -199,6 +199,7 @@ ENGLISH: Mapping[str, str] = {
     "work.control.point": "Point",
     "work.control.label": "Subgroup",
     "work.control.value": "Value",
+    "work.control.end_x": "Line at",
     "work.control.centre": "Centre",
     "work.control.lower": "Lower",
     "work.control.upper": "Upper",

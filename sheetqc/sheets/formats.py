@@ -75,6 +75,7 @@ STYLES: dict[str, dict[str, Any]] = {
     "strong": {"bold": True},
     "cell": {"font_size": 9, "valign": "top", "bottom": 4, "bottom_color": HAIRLINE},
     "cell_right": {"font_size": 9, "valign": "top", "align": "right", "bottom": 4, "bottom_color": HAIRLINE},
+    "cell_wrapped": {"font_size": 9, "valign": "top", "text_wrap": True, "bottom": 4, "bottom_color": HAIRLINE},
     "cell_strong": {"bold": True, "valign": "top", "align": "left", "indent": 1, "bottom": 4, "bottom_color": HAIRLINE},
     "cell_words": {
         "font_size": 9,

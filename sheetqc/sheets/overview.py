@@ -17,7 +17,7 @@ from sheetqc.sheets.words import Words
 from sheetqc.sheets.workings.verdict import STATES
 
 COLUMNS = (
-    ("id", 70), ("characteristic", 150), ("unit", 48), ("n", 42), ("verdict", 106), ("index", 46), ("required", 62),
+    ("id", 100), ("characteristic", 180), ("unit", 48), ("n", 42), ("verdict", 106), ("index", 46), ("required", 62),
     ("estimate", 62), ("at_least", 62), ("ppm", 78), ("ppm_most", 66), ("reason", 330), ("next", 300),
 )  # fmt: skip
 AT = {key: index for index, (key, _) in enumerate(COLUMNS)}
@@ -72,7 +72,7 @@ def _write_head(job: OverviewJob) -> int:
     told = [(say(f"overview.header.{key}"), str(getattr(header, key))) for key in HEADER if getattr(header, key)]
     told.append((say("overview.header.source"), job.answer.source.name))
     for index, (label, text) in enumerate(told):
-        column = (0, 4, 9, 11)[index % 4]
+        column = (0, 4, 11, 12)[index % 4]
         row = 1 + index // 4
         pen.text(row, column, f"{label}:  {text}", "subtitle")
     return 1 + -(-len(told) // 4) + 1
@@ -104,11 +104,11 @@ def _write_row(job: OverviewJob, row: int, found: Assessment, page: WrittenPage)
     pen, asked = job.pen, found.characteristic
     reason = " ".join(found.verdict.reasons)
     steps = " ".join(found.verdict.next_steps)
-    lines = max(lines_of(reason, 62), lines_of(steps, 56), 1)
+    lines = max(lines_of(reason, 62), lines_of(steps, 56), lines_of(asked.name, 32))
     pen.sheet.set_row_pixels(row, 6 + 15 * lines)
     link = f"internal:{quoted(page.sheet)}!A1"
     pen.sheet.write_url(row, AT["id"], link, pen.formats("link_cell"), asked.id)
-    pen.text(row, AT["characteristic"], asked.name, "cell")
+    pen.text(row, AT["characteristic"], asked.name, "cell_wrapped")
     pen.text(row, AT["unit"], asked.unit, "cell")
     index = found.verdict.index
     for key, source, number_format, style in (
@@ -173,8 +173,7 @@ def _write_legend(job: OverviewJob, row: int) -> int:
     for offset, state in enumerate(STATES):
         look = pen.formats.own(bold=True, font_color=VERDICT[state])
         pen.sheet.write_string(top + offset, 0, f"{say.sign(state)}  {say.state(state)}", look)
-        pen.text(top + offset, AT["characteristic"] + 0, "", "small")
-        pen.text(top + offset, 2, say(f"meaning.{state}"), "small")
+        pen.text(top + offset, 1, say(f"meaning.{state}"), "small")
     texts: Sequence[str] = [say(f"caution.{i}") for i in (1, 2, 3)] + [say("overview.names", method=job.method)]
     for offset, text in enumerate(texts):
         pen.sheet.merge_range(

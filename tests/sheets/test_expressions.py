@@ -60,7 +60,7 @@ def test_an_index_is_never_rounded_up(value: float, shown: float) -> None:
     assert cut(value) == pytest.approx(shown)
 
 
-def test_stored_values_keep_twelve_digits() -> None:
-    assert shortened(1 / 3) == 0.333333333333
+def test_stored_values_keep_eleven_digits() -> None:
+    assert shortened(1 / 3) == 0.33333333333
     assert shortened("x") == "x"
     assert shortened(7) == 7

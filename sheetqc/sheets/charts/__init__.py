@@ -27,10 +27,10 @@ class ChartKind:
 
 
 CHARTS: tuple[ChartKind, ...] = (
-    ChartKind(key="time_order", question="data", rows=11, draw=time_order),
-    ChartKind(key="location", question="steady", rows=9, draw=location_track),
-    ChartKind(key="spread", question="steady", rows=7, draw=spread_track),
-    ChartKind(key="histogram", question="shape", rows=14, draw=histogram),
-    ChartKind(key="probability", question="shape", rows=14, draw=probability_plot),
-    ChartKind(key="candidates", question="capable", rows=13, draw=candidate_indices),
+    ChartKind(key="time_order", question="data", rows=9, draw=time_order),
+    ChartKind(key="location", question="steady", rows=8, draw=location_track),
+    ChartKind(key="spread", question="steady", rows=6, draw=spread_track),
+    ChartKind(key="histogram", question="shape", rows=12, draw=histogram),
+    ChartKind(key="probability", question="shape", rows=12, draw=probability_plot),
+    ChartKind(key="candidates", question="capable", rows=12, draw=candidate_indices),
 )

@@ -36,12 +36,15 @@ def spread_track(request: ChartRequest) -> Drawing | None:
 def _drawn(request: ChartRequest, track: Track, title: str) -> Drawing:
     say, n = request.say, len(track.value.values)
     drawing = Drawing(
-        request.workbook, request.sheet, say(title, track=track.title, unit=request.unit_in_words), request.rows
+        request.workbook,
+        request.sheet,
+        say(title, track=track.title[:1].upper() + track.title[1:], unit=request.unit_in_words),
+        request.rows,
     )
     drawing.place()
-    drawing.line(track.point, track.lower, CONTROL, name=say("chart.control_lower"))
-    drawing.line(track.point, track.upper, CONTROL, name=say("chart.control_upper"))
-    drawing.line(track.point, track.centre, CENTRE, name=say("chart.centre"))
+    drawing.line(track.end_x, track.lower, CONTROL, name=say("chart.control_lower"))
+    drawing.line(track.end_x, track.upper, CONTROL, name=say("chart.control_upper"))
+    drawing.line(track.end_x, track.centre, CENTRE, name=say("chart.centre"))
     drawing.points(track.point, track.value, dot(size=3 if n > 60 else 4), line=solid(ACCENT, 0.5), name=track.title)
     _draw_labels(request, drawing, track)
     if track.signal is not None:
@@ -53,9 +56,9 @@ def _drawn(request: ChartRequest, track: Track, title: str) -> Drawing:
 
 def _draw_labels(request: ChartRequest, drawing: Drawing, track: Track) -> None:
     """Names of the three lines, right of the last point."""
-    last, say = len(track.value.values) - 1, request.say
-    place = track.point.at(last).number + 1.0
-    ends = [column.at(last) for column in (track.lower, track.centre, track.upper)]
+    say = request.say
+    place = track.point.at(len(track.point.values) - 1).number + 1.0
+    ends = [column.at(len(column.values) - 1) for column in (track.lower, track.centre, track.upper)]
     line = request.workings.lines.anchors(track.title, place, ends)
     words = [say(f"chart.control.{key}") for key in ("lower", "centre", "upper")]
     drawing.points(

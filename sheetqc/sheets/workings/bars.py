@@ -13,7 +13,7 @@ from sheetqc.sheets.job import Job
 from sheetqc.sheets.workings.ground import FIRST, Ground
 from sheetqc.sheets.workings.values import Values
 
-STRIPE = 4.0
+STRIPE = 6.0
 """Width of a stripe of the filling, in pixels: narrow, so that its end does not show above the bar."""
 
 HEADS = ("from", "to", "share", "stripe_x", "stripe_y", "outline_x", "outline_y")

@@ -18,7 +18,7 @@ from sheetqc.sheets.workings.ground import FIRST, Ground
 from sheetqc.sheets.workings.quantities import Quantities
 from sheetqc.sheets.workings.values import Values
 
-HEADS = ("point", "label", "value", "centre", "lower", "upper", "outside", "signal")
+HEADS = ("point", "label", "value", "end_x", "centre", "lower", "upper", "outside", "signal")
 
 FEW = 0.4
 """Share of the points up to which a signal is marked point by point."""
@@ -29,11 +29,12 @@ Limit = tuple[str, float]
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Track:
-    """One track of the control chart."""
+    """One track of the control chart; limits that are the same for all points stand for the first and the last."""
 
     title: str
     point: Column
     value: Column
+    end_x: Column
     centre: Column
     lower: Column
     upper: Column
@@ -122,18 +123,21 @@ def _write_track(
     pen, rows = job.pen, range(len(track.points))
     first = max(0, len(job.assessment.stability.labels) - len(track.points)) + 1
     point = pen.numbers(FIRST, column, [first + i for i in rows])
+    level = all(len(set(numbers)) == 1 for numbers in (track.centre, track.lower, track.upper))
+    shown = (0, len(track.points) - 1) if level else tuple(rows)
+    end_x = pen.numbers(FIRST, column + 3, [first + i for i in shown])
     columns = []
-    for offset, numbers, formulas in zip((3, 4, 5), (track.centre, track.lower, track.upper), ends, strict=True):
+    for offset, numbers, formulas in zip((4, 5, 6), (track.centre, track.lower, track.upper), ends, strict=True):
         if formulas is None:
-            columns.append(pen.numbers(FIRST, column + offset, numbers, look))
+            columns.append(pen.numbers(FIRST, column + offset, [numbers[i] for i in shown], look))
         else:
-            columns.append(
-                pen.formulas(FIRST, column + offset, [f[0] for f in formulas], [f[1] for f in formulas], look)
-            )
-    v, lo, hi = ([c.at(i).ref for i in rows] for c in (value, columns[1], columns[2]))
+            told = [formulas[i] for i in shown]
+            columns.append(pen.formulas(FIRST, column + offset, [t[0] for t in told], [t[1] for t in told], look))
+    v = [value.at(i).ref for i in rows]
+    lo, hi = ([c.at(0 if level else i).ref for i in rows] for c in (columns[1], columns[2]))
     outside = pen.formulas(
         FIRST,
-        column + 6,
+        column + 7,
         [f"IF(OR({v[i]}<{lo[i]},{v[i]}>{hi[i]}),{v[i]},NA())" for i in rows],
         [p if p < a or p > b else NA for p, a, b in zip(track.points, track.lower, track.upper, strict=True)],
         look,
@@ -142,6 +146,7 @@ def _write_track(
         title=track.title,
         point=point,
         value=value,
+        end_x=end_x,
         centre=columns[0],
         lower=columns[1],
         upper=columns[2],
@@ -163,7 +168,7 @@ def _write_signals(job: Job, column: int, track: ChartTrack, value: Column, look
         return None
     refs = [value.at(i) for i in rows]
     formulas = [refs[i].ref if marked[i] else "NA()" for i in rows]
-    return job.pen.formulas(FIRST, column + 7, formulas, [refs[i].number if marked[i] else NA for i in rows], look)
+    return job.pen.formulas(FIRST, column + 8, formulas, [refs[i].number if marked[i] else NA for i in rows], look)
 
 
 def _alike(a: float, b: float) -> bool:
