@@ -19,7 +19,7 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from sheetqc.finding import Cell
+from sheetqc.finding import Cell, Finding
 
 
 class SheetqcError(Exception):
@@ -40,6 +40,7 @@ class WorkbookError(SheetqcError):
     advice : what the reader should do, as a sentence, or ""
     file : the workbook, when known
     cell : the place in it, when there is one
+    findings : what else was noticed before it was given up
     """
 
     code = "workbook"
@@ -52,12 +53,14 @@ class WorkbookError(SheetqcError):
         advice: str = "",
         file: Path | None = None,
         cell: Cell | None = None,
+        findings: tuple[Finding, ...] = (),
     ) -> None:
         self.met = met
         self.expected = expected
         self.advice = advice
         self.file = file
         self.cell = cell
+        self.findings = findings
         super().__init__(met, expected, advice, file, cell)
 
     def __str__(self) -> str:
@@ -67,13 +70,19 @@ class WorkbookError(SheetqcError):
         return f"{where}{self.met}{expected}.{advice}"
 
     def __reduce__(self) -> tuple[object, ...]:
-        return _rebuild, (type(self), self.met, self.expected, self.advice, self.file, self.cell)
+        return _rebuild, (type(self), self.met, self.expected, self.advice, self.file, self.cell, self.findings)
 
 
 def _rebuild(
-    kind: type[WorkbookError], met: str, expected: str, advice: str, file: Path | None, cell: Cell | None
+    kind: type[WorkbookError],
+    met: str,
+    expected: str,
+    advice: str,
+    file: Path | None,
+    cell: Cell | None,
+    findings: tuple[Finding, ...],
 ) -> WorkbookError:
-    return kind(met, expected=expected, advice=advice, file=file, cell=cell)
+    return kind(met, expected=expected, advice=advice, file=file, cell=cell, findings=findings)
 
 
 class MissingWorkbook(WorkbookError):

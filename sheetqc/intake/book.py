@@ -28,6 +28,10 @@ class Book(Protocol):
     def names(self) -> dict[str, str]:
         """Defined names of the workbook and what they refer to."""
 
+    @property
+    def values_only(self) -> bool:
+        """Whether nothing but stored values can be read."""
+
     def candidates(self) -> Iterator[Sheet]:
         """The sheets that may hold a tag, hidden ones too."""
 
@@ -48,6 +52,7 @@ class OoxmlBook:
     _strings: list[str]
     _formats: list[Format]
     _epoch_1904: bool
+    values_only: bool = False
 
     def candidates(self) -> Iterator[Sheet]:
         """The sheets that may hold a tag, hidden ones too."""

@@ -44,7 +44,7 @@ def columns_of(headings: HeadingRow, block_name: str, names: Names, doubts: Doub
         text = headings.texts.get(column, "")
         identity = names.exact(text) if text else None
         name = vocabulary.field_of(block_name, text)
-        if identity is None and (name is None or name == "aside"):
+        if identity is None and (name is None or name == "aside") and _mostly_numbers(headings, column):
             identity = names.loose(text) if text else None
         if identity is not None:
             columns.values.setdefault(identity, []).append(column)
@@ -150,4 +150,5 @@ def _tell_several(columns: Columns, headings: HeadingRow, doubts: Doubts) -> Non
                 f"{len(own)} columns belong to {identity} ({places(cells)}): the values of a row were read as a "
                 f"subgroup of {len(own)}. If that is wrong, give each column a heading of its own."
             )
-        doubts.add("values-across", "note", text, cells, of=identity)
+        same = len({vocabulary.key(headings.upper(c)) for c in own}) == 1
+        doubts.add("values-across", "note" if same or columns.streams else "caution", text, cells, of=identity)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Iterator, Sequence
 from typing import Any
 
@@ -13,6 +14,7 @@ from sheetqc.intake.doubts import Doubts, listed
 from sheetqc.intake.figures import figure_in, tidied
 from sheetqc.study import Header
 
+_BEFORE_NUMBER = re.compile(r"^(?:[CP]m?pk?|Cmk?)?\s*[≥>=:]*\s*", re.IGNORECASE)
 _TEXTS = ("part_number", "part_name", "supplier", "lot", "date", "prepared_by", "note")
 
 
@@ -132,7 +134,7 @@ def _number(held: Held) -> float | None:
     number = number_in(held)
     if number is not None or nature(held) != "text":
         return number
-    figure = figure_in(shown(held).strip().lstrip("≥>=").strip())
+    figure = figure_in(_BEFORE_NUMBER.sub("", tidied(shown(held))))
     usable = figure.sense == "number" and figure.rest in ("", "%") and not figure.mark
     if usable and figure.rest == "%":
         return figure.number / 100

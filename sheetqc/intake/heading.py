@@ -37,6 +37,10 @@ class HeadingRow:
         own = self.block.sheet.text(row, column)
         return self.block.sheet.cell(row if own else self.first, column)
 
+    def upper(self, column: int) -> str:
+        """The text of a column in the first heading row, or of the merged area it belongs to."""
+        return self.block.sheet.spread_text(self.first, column)
+
     def data_rows(self) -> list[int]:
         """Numbers of the filled rows below the headings."""
         return list(self.block.filled[bisect_right(self.block.filled, self.last) :])

@@ -138,6 +138,7 @@ def piece_of(columns: Columns, asked: Characteristic, raw: Sequence[Raw], decima
     """The values of one characteristic with their labels; what is noteworthy in its cells is told."""
     piece = Piece(block=columns.block, characteristic=asked.id)
     takings = _takings(columns, asked, raw, decimal)
+    unheard = {column: Taking(taking.scale) for column, taking in takings.items()}
     plain = {column for column, taking in takings.items() if taking.scale.heading_factor == 1.0}
     name = columns.block.sheet.name
     used: list[tuple[int, Row, int]] = []
@@ -146,7 +147,7 @@ def piece_of(columns: Columns, asked: Characteristic, raw: Sequence[Raw], decima
         if held.__class__ is float and column in plain and not row.reason:
             value, mark, copied = held, "", False
         else:
-            taken = takings[column].value(held, cell)
+            taken = (unheard if row.reason else takings)[column].value(held, cell)
             if row.reason:
                 value_left = None if taken is None else taken.value
                 piece.left_out.append(LeftOut(value=value_left, cell=cell, reason=row.reason))

@@ -39,6 +39,11 @@ class OtherBook:
         self._book.close()
 
     @property
+    def values_only(self) -> bool:
+        """Nothing but stored values can be read."""
+        return True
+
+    @property
     def names(self) -> dict[str, str]:
         """Defined names are not known in these makes."""
         return {}

@@ -41,12 +41,19 @@ def read(path: Path) -> Study:
     with _foreign_errors(path), open_book(path) as book:
         source = source_of(path)
         blocks = _blocks(book, doubts)
+        if book.values_only:
+            doubts.add(
+                "values-only",
+                "caution",
+                f"{path.name} is no workbook of the .xlsx kind and was read by its stored values alone: hidden rows, "
+                "error values, crossed-out cells and formulas could not be seen. Save it as .xlsx to have them seen.",
+            )
         try:
             return _study(source, blocks, References(book), doubts)
         except NothingToAnswer as error:
-            raise NothingToAnswer(
-                error.met, expected=error.expected, advice=error.advice, file=path, cell=error.cell
-            ) from None
+            error.file = path
+            error.findings = (*doubts.study, *(finding for _, finding in doubts.of_characteristics))
+            raise
 
 
 def source_of(path: Path) -> Source:
@@ -124,13 +131,46 @@ def _study(source: Source, blocks: Sequence[Block], references: References, doub
     pieces = [piece for b in by_tag["qc:measurements"] for piece in pieces_of(b, characteristics, doubts)]
     pieces += placed_pieces(placed, characteristics, doubts)
     samples = samples_of(characteristics, pieces, doubts)
+    gauge_studies = gauge_studies_of(by_tag["qc:gauge"], characteristics, doubts)
+    if not (counts or gauge_studies or any(sample.values or sample.left_out for sample in samples)):
+        raise _no_values([*by_tag["qc:measurements"], *by_tag["qc:places"]], doubts)
     return Study(
         source=source,
         header=header,
         characteristics=characteristics,
         samples=samples,
-        gauge_studies=gauge_studies_of(by_tag["qc:gauge"], characteristics, doubts),
+        gauge_studies=gauge_studies,
         counts=counts,
         findings=doubts.study,
         findings_of=doubts.of_characteristics,
     )
+
+
+def _no_values(blocks: Sequence[Block], doubts: Doubts) -> NothingToAnswer:
+    """The error for characteristics without a single measured value, with the likeliest reason."""
+    if not blocks:
+        return NothingToAnswer(
+            "no cell holds the tag qc:measurements, and no measured values were found",
+            expected="the measured values below such a tag (means and indices alone say too little)",
+            advice="Write qc:measurements into a cell, below it a row with the Ids as headings, below that the values.",
+        )
+    told = (*doubts.study, *(finding for _, finding in doubts.of_characteristics))
+    reason = next((f for code in _REASONS for f in told if f.code == code), None)
+    return NothingToAnswer(
+        f"no usable measured value is found by the tag {blocks[0].tag}",
+        expected="values for at least one listed characteristic",
+        advice=reason.text if reason is not None else "Fill in the values.",
+        cell=blocks[0].at,
+    )
+
+
+_REASONS = (
+    "no-heading-row",
+    "value-column-without-characteristic",
+    "unlisted-characteristic",
+    "unknown-reference",
+    "uncalculated-formula",
+    "ambiguous-number",
+    "not-a-number",
+)
+"""Findings that explain why there is no value, the likeliest first."""

@@ -64,8 +64,9 @@ def test_entries_that_cannot_be_used(tmp_path: Path, label: str, typed: Any) -> 
     assert study.header.requirement is None
 
 
-def test_requirement_as_text(tmp_path: Path) -> None:
-    assert _study(tmp_path, table("A1", [["qc:study"], ["Requirement", "≥ 1,33"]])).header.requirement == 1.33
+@pytest.mark.parametrize("typed", ["≥ 1,33", "1.33", "Cpk >= 1,33", "Ppk: 1.33", "Cmk 1.33"])
+def test_requirement_as_text(tmp_path: Path, typed: str) -> None:
+    assert _study(tmp_path, table("A1", [["qc:study"], ["Requirement", typed]])).header.requirement == 1.33
 
 
 def test_labels_merged_over_columns(tmp_path: Path) -> None:

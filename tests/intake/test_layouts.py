@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 import datetime
+import pickle
 from pathlib import Path
 from typing import Any
 
 import pytest
 
 from sheetqc import intake
+from sheetqc.errors import NothingToAnswer
 from sheetqc.study import Study
 from tests.intake.building import (
     CHARACTERISTICS,
@@ -346,11 +348,21 @@ def test_characteristic_without_values(tmp_path: Path) -> None:
 
 
 def test_measurements_without_a_known_heading(tmp_path: Path) -> None:
-    study = study_of(tmp_path, table("A1", [["qc:measurements"], ["X", "Y"], [1, 2]]))
-    found = finding(study, "no-heading-row")
+    page = table("A1", [["qc:measurements"], ["X", "Y"], [1, 2]]) | table("D1", [["qc:measurements"], ["D12"], [12]])
+    found = finding(study_of(tmp_path, page), "no-heading-row")
     assert found.level == "stop"
     assert cells(found) == ["'Run'!A1", "'Run'!A2", "'Run'!B2"]
     assert "D12 and F7" in found.text
+
+
+@pytest.mark.parametrize("rows", [[[1, 2], [3, 4]], [["X", "Y"], [1, 2]], []])
+def test_nothing_but_measurements_without_headings_is_returned(tmp_path: Path, rows: list[list[Any]]) -> None:
+    with pytest.raises(NothingToAnswer) as caught:
+        study_of(tmp_path, table("A1", [["qc:measurements"], *rows]))
+    assert str(caught.value.cell) == "'Run'!A1"
+    assert "D12 and F7" in str(caught.value)
+    assert "no-heading-row" in [f.code for f in caught.value.findings]
+    assert pickle.loads(pickle.dumps(caught.value)).findings == caught.value.findings
 
 
 def test_times_are_kept_as_texts(tmp_path: Path) -> None:

@@ -122,7 +122,7 @@ def test_defined_names_and_tables(tmp_path: Path) -> None:
 
 @pytest.mark.parametrize("where", ["'Run 9'!E10:E14", "no_such_name", "Table9[D12]", "E10 to E14", "'Run 1'!ZZZZ1"])
 def test_references_to_nothing(tmp_path: Path, where: str) -> None:
-    study = _study(tmp_path, [["D12", "Values", where], ["D12", "USL", 13]])
+    study = _study(tmp_path, [["D12", "Values", where], ["D12", "USL", 13], ["E1", "Values", "'Run 1'!E10:E14"]])
     found = finding(study, "unknown-reference", "D12")
     assert found.level == "stop"
     assert cells(found) == ["'For the office'!D4"]

@@ -4,7 +4,9 @@ from __future__ import annotations
 
 import hashlib
 import io
+import shutil
 import struct
+import subprocess
 import zipfile
 from pathlib import Path
 
@@ -306,3 +308,28 @@ def test_a_million_formatted_empty_rows_cost_little(tmp_path: Path) -> None:
     sample = intake.read(path).samples[0]
     assert sample.values == (*VALUES, 12.5)
     assert str(sample.cells[-1]) == "'Run'!A300001"
+
+
+def _converted(workbook: Path, ending: str, into: Path) -> Path:
+    office = shutil.which("soffice")
+    if office is None:
+        pytest.skip("LibreOffice is not there")
+    profile = f"-env:UserInstallation={(into / 'profile').as_uri()}"
+    command = [office, profile, "--headless", "--convert-to", ending, "--outdir", str(into), str(workbook)]
+    subprocess.run(command, check=True, capture_output=True, timeout=180)
+    return into / f"{workbook.stem}.{ending}"
+
+
+@pytest.mark.office
+@pytest.mark.parametrize("ending", ["xls", "ods"])
+def test_workbooks_of_other_makes_are_read_by_their_values(tmp_path: Path, ending: str) -> None:
+    study = intake.read(_converted(_good(tmp_path / "good.xlsx"), ending, tmp_path))
+    assert study.samples[0].values == tuple(VALUES)
+    assert str(study.samples[0].cells[0]) == "'Run'!A3"
+    assert [f.code for f in study.findings] == ["values-only"]
+
+
+def test_characteristics_alone_say_that_values_are_missing(tmp_path: Path) -> None:
+    error = _refused(write(tmp_path / "c.xlsx", {"Spec": CHARACTERISTICS}), NothingToAnswer)
+    assert "qc:measurements" in str(error)
+    assert {f.code for f in error.findings} == {"no-values"}
