@@ -12,6 +12,8 @@ LogLikelihood = Callable[[Array], Array]
 """Log-likelihoods (m,) of parameter values (m, k) in unconstrained coordinates; -inf where impossible."""
 
 ROUNDS = 8
+STEEP = 50.0
+"""Fall that stands for a step out of what is possible."""
 
 
 def border(log_likelihood: LogLikelihood, centre: Array, drops: Array) -> Array:
@@ -32,23 +34,26 @@ def border(log_likelihood: LogLikelihood, centre: Array, drops: Array) -> Array:
     """
     centre = np.asarray(centre, dtype=float)
     top = float(log_likelihood(centre[None])[0])
+    if not np.isfinite(top):
+        return np.broadcast_to(centre, (len(drops), 1, len(centre)))
     steps = directions(len(centre)) @ axes(log_likelihood, centre, top).T
     wanted = np.repeat(np.asarray(drops, dtype=float), len(steps))
     rays = np.tile(steps, (len(drops), 1))
-    radius = _radii(lambda t: top - log_likelihood(centre + t[:, None] * rays), wanted)
+    radius = radii(lambda t: top - log_likelihood(centre + t[:, None] * rays), wanted)
     return (centre + radius[:, None] * rays).reshape(len(drops), len(steps), len(centre))
 
 
 def directions(k: int) -> Array:
-    """Unit vectors spread evenly over the sphere of k dimensions, opposite ones in pairs."""
+    """Unit vectors over the sphere of k dimensions, opposite ones in pairs; evenly for 2, else axes and diagonals."""
     if k == 1:
         return np.array([[1.0], [-1.0]])
     if k == 2:
         angle = np.arange(24) * np.pi / 12
         return np.stack([np.cos(angle), np.sin(angle)], axis=1)
     grid = np.stack(np.meshgrid(*[[-1.0, 0.0, 1.0]] * k, indexing="ij"), axis=-1).reshape(-1, k)
-    grid = grid[np.any(grid != 0, axis=1)]
-    return np.asarray(grid / np.linalg.norm(grid, axis=1, keepdims=True))
+    length = np.linalg.norm(grid, axis=1)
+    near = (length > 0) & (length < 1.5)
+    return np.asarray(grid[near] / length[near, None])
 
 
 def axes(log_likelihood: LogLikelihood, centre: Array, top: float) -> Array:
@@ -58,18 +63,16 @@ def axes(log_likelihood: LogLikelihood, centre: Array, top: float) -> Array:
     """
     k = len(centre)
     unit = _unit_steps(log_likelihood, centre, top)
-    plus = log_likelihood(centre + np.diag(unit))
-    minus = log_likelihood(centre - np.diag(unit))
-    matrix = np.diag(np.maximum(2 * top - plus - minus, 1e-3))
     pairs = [(i, j) for i in range(k) for j in range(i)]
-    if pairs:
-        both = np.array([centre + unit * ((np.arange(k) == i) + 1.0 * (np.arange(k) == j)) for i, j in pairs])
-        apart = np.array([centre + unit * ((np.arange(k) == i) - 1.0 * (np.arange(k) == j)) for i, j in pairs])
-        cross = 0.5 * (log_likelihood(apart) - log_likelihood(both))
-        back = 0.5 * (log_likelihood(2 * centre - apart) - log_likelihood(2 * centre - both))
-        for (i, j), value in zip(pairs, 0.5 * (cross + back), strict=True):
-            matrix[i, j] = matrix[j, i] = value if np.isfinite(value) else 0.0
-    matrix = np.where(np.isfinite(matrix), matrix, np.diag(np.ones(k)))
+    single = np.concatenate([np.diag(unit), -np.diag(unit)])
+    double = [unit * (np.eye(k)[i] + sign * np.eye(k)[j]) for i, j in pairs for sign in (1.0, -1.0)]
+    with np.errstate(all="ignore"):
+        fall = top - log_likelihood(centre + np.concatenate([single, np.array(double).reshape(-1, k)]))
+    fall = np.nan_to_num(fall, nan=STEEP, posinf=STEEP, neginf=0.0)
+    matrix = np.diag(np.maximum(fall[:k] + fall[k : 2 * k], 1e-3))
+    for number, (i, j) in enumerate(pairs):
+        together, apart = fall[2 * k + 2 * number : 2 * k + 2 * number + 2]
+        matrix[i, j] = matrix[j, i] = 0.5 * (together - apart)
     size, turn = np.linalg.eigh(matrix)
     return np.asarray(unit[:, None] * turn / np.sqrt(np.maximum(size, 0.02 * size.max())))
 
@@ -79,28 +82,27 @@ def _unit_steps(log_likelihood: LogLikelihood, centre: Array, top: float) -> Arr
     k = len(centre)
     step = np.full(k, 0.1) * np.maximum(1.0, 0.1 * np.abs(centre))
     for _ in range(8):
-        fall = top - np.minimum(log_likelihood(centre + np.diag(step)), log_likelihood(centre - np.diag(step)))
         with np.errstate(all="ignore"):
+            fall = top - np.minimum(log_likelihood(centre + np.diag(step)), log_likelihood(centre - np.diag(step)))
             factor = np.sqrt(0.5 / np.maximum(fall, 1e-12))
         step = step * np.clip(np.where(np.isfinite(fall), factor, 0.2), 0.05, 8.0)
     return step
 
 
-def _radii(fall: Callable[[Array], Array], wanted: Array) -> Array:
+def radii(fall: Callable[[Array], Array], wanted: Array, *, rounds: int = ROUNDS) -> Array:
     """Radius along each ray at which the fall reaches what is wanted."""
     radius = np.sqrt(2 * wanted)
     inside, outside = np.zeros_like(radius), np.full_like(radius, np.inf)
-    for _ in range(ROUNDS):
-        value = fall(radius)
-        value = np.where(np.isnan(value), np.inf, value)
-        near = value <= wanted
-        inside, outside = np.where(near, radius, inside), np.where(near, outside, radius)
+    for _ in range(rounds):
         with np.errstate(all="ignore"):
+            value = fall(radius)
+            value = np.where(np.isnan(value), np.inf, value)
+            near = value <= wanted
+            inside, outside = np.where(near, radius, inside), np.where(near, outside, radius)
             guess = radius * np.sqrt(wanted / np.maximum(value, 1e-12))
         guess = np.clip(guess, 0.2 * radius, 3.0 * radius)
         usable = (guess >= inside) & (guess <= outside) & np.isfinite(value)
-        middle = np.where(
-            np.isfinite(outside), 0.5 * (inside + np.where(np.isfinite(outside), outside, 0.0)), 2 * radius
-        )
+        bounded = np.isfinite(outside)
+        middle = np.where(bounded, 0.5 * (inside + np.where(bounded, outside, 0.0)), 2 * radius)
         radius = np.where(usable, guess, middle)
     return np.asarray(np.minimum(radius, outside))

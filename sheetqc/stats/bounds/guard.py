@@ -3,17 +3,23 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import lru_cache
 
 import numpy as np
 from numpy.typing import NDArray
 
-from sheetqc.stats.bounds.border import directions
-from sheetqc.stats.bounds.table import NORMAL_IQR, GuardTable, at, guard_table, place
+from sheetqc.stats.bounds.border import directions, radii
+from sheetqc.stats.bounds.table import COUNT, NORMAL_IQR, REACH, GuardTable, at, guard_table, place
 
 Array = NDArray[np.float64]
 
 FIT_ROUNDS = 25
 BORDER_ROUNDS = 6
+GAIN = 1e-4
+"""Gain of log-likelihood below which a search ends."""
+
+OUT_OF_REACH = 25.0
+"""Distance below the best from which no shape comes back."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -31,31 +37,33 @@ class GuardFits:
 def guard_fits(x: Array) -> GuardFits:
     """Maximum-likelihood location and scale of every guard shape.
 
-    Newton steps on the outer product of the scores, damped until the likelihood rises.
+    Newton steps on the outer product of the scores, damped until the likelihood rises; shapes that have converged, or
+    lie too far below the best to matter, leave the search.
 
     Parameters
     ----------
     x : shape (n,), not all equal
     """
     table = guard_table()
-    rows = np.arange(len(table.names))
-    location, scale = _start(x, len(rows))
-    value = log_likelihoods(table, rows, x, location, scale)
-    damping = np.full(len(rows), 0.01)
+    location, scale, value = _start(table, np.arange(len(table.names)), x)
+    damping = np.full(len(value), 0.01)
+    active = np.arange(len(value))
     for _ in range(FIT_ROUNDS):
-        gradient, matrix = _scores(table, rows, x, location, scale)
-        step = _solve(matrix, gradient, damping)
-        tried = location + np.clip(step[:, 0], -1.5, 1.5) * scale
-        stretched = scale * np.exp(np.clip(step[:, 1], -0.7, 0.7))
-        new = log_likelihoods(table, rows, x, tried, stretched)
-        better = new > value
-        gain = np.where(better, new - value, 0.0)
-        location, scale = np.where(better, tried, location), np.where(better, stretched, scale)
-        value = np.where(better, new, value)
-        damping = np.clip(np.where(better, 0.3 * damping, 6 * damping), 1e-6, 1e6)
-        if gain.max() < 1e-5 and damping.min() < 1:
+        place, size = location[active], scale[active]
+        step = _solve(*_scores(table, active, x, place, size), damping[active])
+        tried = place + np.clip(step[:, 0], -1.5, 1.5) * size
+        stretched = size * np.exp(np.clip(step[:, 1], -0.7, 0.7))
+        gain = log_likelihoods(table, active, x, tried, stretched) - value[active]
+        better = gain > 0
+        risen = active[better]
+        location[risen], scale[risen] = tried[better], stretched[better]
+        value[risen] += gain[better]
+        damping[active] *= np.where(better, 0.3, 6.0)
+        moving = (np.where(better, gain, 1.0) > GAIN) & (damping[active] < 1e4)
+        active = active[moving & (value[active] > value.max() - OUT_OF_REACH)]
+        if not len(active):
             break
-    _, matrix = _scores(table, rows, x, location, scale)
+    _, matrix = _scores(table, np.arange(len(value)), x, location, scale)
     return GuardFits(table=table, location=location, scale=scale, log_likelihood=value, axes=_axes(matrix))
 
 
@@ -71,24 +79,15 @@ def guard_border(fits: GuardFits, x: Array, rows: NDArray[np.intp], drops: Array
     """
     steps = np.einsum("md,sed->sme", directions(2), fits.axes[rows])
     location, scale = fits.location[rows, None], fits.scale[rows, None]
-    top, wanted = fits.log_likelihood[rows, None], drops[:, None]
-    radius = np.broadcast_to(np.sqrt(2 * wanted), steps.shape[:2])
-    inside, outside = np.zeros(steps.shape[:2]), np.full(steps.shape[:2], np.inf)
-    for _ in range(BORDER_ROUNDS):
-        fall = top - log_likelihoods(
-            fits.table,
-            rows[:, None],
-            x,
-            location + radius * steps[..., 0] * scale,
-            scale * np.exp(radius * steps[..., 1]),
-        )
-        near = fall <= wanted
-        inside, outside = np.where(near, radius, inside), np.where(near, outside, radius)
-        guess = radius * np.clip(np.sqrt(wanted / np.maximum(fall, 1e-9)), 0.3, 2.0)
-        bounded = np.isfinite(outside)
-        middle = np.where(bounded, 0.5 * (inside + np.where(bounded, outside, 0.0)), 2 * radius)
-        radius = np.where((guess >= inside) & (guess <= outside), guess, middle)
-    return location + radius * steps[..., 0] * scale, scale * np.exp(radius * steps[..., 1])
+
+    def at_radius(radius: Array) -> tuple[Array, Array]:
+        return location + radius * steps[..., 0] * scale, scale * np.exp(radius * steps[..., 1])
+
+    def fall(radius: Array) -> Array:
+        return fits.log_likelihood[rows, None] - log_likelihoods(fits.table, rows[:, None], x, *at_radius(radius))
+
+    wanted = np.broadcast_to(drops[:, None], steps.shape[:2])
+    return at_radius(radii(fall, wanted, rounds=BORDER_ROUNDS))
 
 
 def log_likelihoods(table: GuardTable, rows: NDArray[np.intp], x: Array, location: Array, scale: Array) -> Array:
@@ -98,12 +97,35 @@ def log_likelihoods(table: GuardTable, rows: NDArray[np.intp], x: Array, locatio
     return np.asarray(density.sum(axis=-1) - len(x) * np.log(scale))
 
 
-def _start(x: Array, count: int) -> tuple[Array, Array]:
+def _start(table: GuardTable, rows: NDArray[np.intp], x: Array) -> tuple[Array, Array, Array]:
+    """The best of a few places about the median and the interquartile range, per shape: shapes with an edge need it."""
     lower, middle, upper = np.quantile(x, [0.25, 0.5, 0.75])
     spread = (upper - lower) / NORMAL_IQR
     # many equal values can have quartiles that coincide
     spread = spread if spread > 0.05 * x.std() else x.std()
-    return np.full(count, middle), np.full(count, spread)
+    first, last = end_values(table, len(x))
+    wide = (x.max() - x.min()) / (last - first)
+    locations = np.repeat(middle + spread * np.array([-0.3, 0.0, 0.3]), 3) * np.ones((len(rows), 1))
+    scales = np.tile(spread * np.array([0.85, 1.15, 1.6]), 3) * np.ones((len(rows), 1))
+    locations = np.concatenate([locations, (x.min() - wide * first)[:, None]], axis=1)
+    scales = np.concatenate([scales, wide[:, None]], axis=1)
+    values = log_likelihoods(table, rows[:, None], x, locations, scales)
+    best = np.argmax(values, axis=1)
+    return locations[rows, best], scales[rows, best], values[rows, best]
+
+
+@lru_cache(maxsize=64)
+def end_values(table: GuardTable, n: int) -> tuple[Array, Array]:
+    """Standardised values near which the smallest and the largest of n lie, per shape."""
+    u = np.linspace(-REACH, REACH, COUNT)
+    first = [np.sinh(np.interp(0.5 / n, *_rising(row, u))) for row in table.cdf]
+    last = [np.sinh(np.interp(-0.5 / n, *_rising(-row, u))) for row in table.survival]
+    return np.array(first), np.array(last)
+
+
+def _rising(values: Array, u: Array) -> tuple[Array, Array]:
+    keep = np.concatenate([[True], np.diff(values) > 0])
+    return values[keep], u[keep]
 
 
 def _scores(table: GuardTable, rows: NDArray[np.intp], x: Array, location: Array, scale: Array) -> tuple[Array, Array]:
@@ -115,7 +137,7 @@ def _scores(table: GuardTable, rows: NDArray[np.intp], x: Array, location: Array
     return scores.sum(axis=1), np.einsum("sni,snj->sij", scores, scores)
 
 
-def _solve(matrix: Array, gradient: Array, damping: Array) -> Array:
+def _solve(gradient: Array, matrix: Array, damping: Array) -> Array:
     a, b, d = matrix[:, 0, 0] * (1 + damping), matrix[:, 0, 1], matrix[:, 1, 1] * (1 + damping)
     determinant = np.maximum(a * d - b * b, 1e-300)
     first = (d * gradient[:, 0] - b * gradient[:, 1]) / determinant

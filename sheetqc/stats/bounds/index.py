@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from sheetqc.stats.bounds.table import at, guard_table, place
-from sheetqc.stats.bounds.union import Guard, ModelUnion
+from sheetqc.stats.bounds.union import ModelUnion
 from sheetqc.stats.errors import DataError
 from sheetqc.stats.families import family
 
@@ -64,17 +64,11 @@ def ppk_upper(union: ModelUnion, lower: float | None, upper: float | None) -> fl
     return ppk_bounds(union, lower, upper).upper
 
 
-def pp_of_triples(triples: ArrayLike, lower: float, upper: float) -> Array:
-    """Pp by the quantile method, (U - L) / (X99.865 - X0.135), for quantile triples (m, 3); shape (m,)."""
-    low, _, high = np.moveaxis(np.asarray(triples, dtype=float), -1, 0)
-    return np.asarray((upper - lower) / (high - low))
-
-
 def pp_bounds(union: ModelUnion, lower: float | None, upper: float | None) -> Bounds:
-    """One-sided bounds of Pp; both None unless both limits are given."""
+    """One-sided bounds of Pp by the quantile method, (U - L) / (X99.865 - X0.135); both None unless both are given."""
     if lower is None or upper is None:
         return Bounds()
-    values = pp_of_triples(union.triples, lower, upper)
+    values = (upper - lower) / np.ptp(union.triples, axis=1)
     return Bounds(lower=float(values.min()), upper=float(values.max()))
 
 
@@ -87,11 +81,11 @@ def rate_bounds(union: ModelUnion, lower: float | None, upper: float | None) -> 
     """
     if lower is None and upper is None:
         raise DataError("a rate outside the limits needs a limit")
-    rates = [_family_rates(fit.family, fit.points, lower, upper) for fit in union.fits if fit.admitted]
     if union.guard is not None:
-        rates.append(_guard_rates(union.guard, lower, upper))
-    every = np.concatenate(rates)
-    return RateBounds(lower=float(every.min()), upper=float(every.max()))
+        parts = _guard_rates(union.guard.tails, lower, upper)
+        return RateBounds(lower=float(sum(p.min() for p in parts)), upper=float(sum(p.max() for p in parts)))
+    rates = np.concatenate([_family_rates(f.family, f.region.points, lower, upper) for f in union.fits if f.admitted])
+    return RateBounds(lower=float(rates.min()), upper=float(rates.max()))
 
 
 def _family_rates(name: str, points: Array, lower: float | None, upper: float | None) -> Array:
@@ -101,11 +95,12 @@ def _family_rates(name: str, points: Array, lower: float | None, upper: float | 
     return np.asarray(below + above)
 
 
-def _guard_rates(guard: Guard, lower: float | None, upper: float | None) -> Array:
+def _guard_rates(tails: tuple[Array, Array], lower: float | None, upper: float | None) -> list[Array]:
+    """Rates below the lower limit and above the upper one, over the points kept for each tail."""
     table = guard_table()
-    rates = np.zeros(len(guard.rows))
-    for limit, tail in ((lower, table.cdf), (upper, table.survival)):
+    found = []
+    for points, limit, tail in zip(tails, (lower, upper), (table.cdf, table.survival), strict=True):
         if limit is not None:
-            cell, share = place((limit - guard.locations) / guard.scales)
-            rates = rates + np.clip(at(tail, guard.rows, cell, share), 0.0, 1.0)
-    return rates
+            cell, share = place((limit - points[:, 1]) / points[:, 2])
+            found.append(np.clip(at(tail, points[:, 0].astype(np.intp), cell, share), 0.0, 1.0))
+    return found

@@ -17,8 +17,11 @@ from scipy import special
 Array = NDArray[np.float64]
 LogDensity = Callable[[Array], Array]
 
-LOWEST = -700.0
+NOWHERE = -700.0
 """Logarithm that stands for an impossible value."""
+
+EDGE = 0.1
+"""Width of a soft edge, in the unit of the standard form."""
 
 
 def normal(z: Array) -> Array:
@@ -57,6 +60,16 @@ def soft_exponential(mean: float) -> LogDensity:
     return lambda z: -z / mean + special.log_ndtr(z - 1 / mean)
 
 
+def soft_edge(z: Array) -> tuple[Array, Array]:
+    """log y and log dy/dz of y = h log(1 + e^(z/h)): nearly z above 0, without a hard edge at 0.
+
+    A soft edge leaves the likelihood regular where the origin of a shape is to be found, and bears rounded values.
+    """
+    t = z / EDGE
+    y = EDGE * np.logaddexp(0.0, t)
+    return np.where(t < -30, np.log(EDGE) + t, np.log(np.maximum(y, 1e-300))), -np.logaddexp(0.0, -t)
+
+
 def lognormal(sigma: float) -> LogDensity:
     """The lognormal form with a free origin."""
     return lambda z: _of_log(z, sigma, normal)
@@ -68,9 +81,28 @@ def log_student(sigma: float, df: float) -> LogDensity:
 
 
 def _of_log(z: Array, sigma: float, of: LogDensity) -> Array:
-    y = 1 + sigma * z
-    log = np.log(np.where(y > 0, y, 1.0))
-    return np.where(y > 0, -log + of(log / sigma), LOWEST)
+    log, bend = soft_edge(1 + sigma * z)
+    return -log + of(log / sigma) + bend
+
+
+def gamma(shape: float) -> LogDensity:
+    """The gamma form with a free origin."""
+
+    def form(z: Array) -> Array:
+        log, bend = soft_edge(z)
+        return (shape - 1) * log - np.exp(log) + bend
+
+    return form
+
+
+def weibull(shape: float) -> LogDensity:
+    """The Weibull form with a free origin."""
+
+    def form(z: Array) -> Array:
+        log, bend = soft_edge(z)
+        return (shape - 1) * log - np.exp(shape * log) + bend
+
+    return form
 
 
 def largest(z: Array) -> Array:
@@ -82,9 +114,8 @@ def extreme(shape: float) -> LogDensity:
     """The generalised extreme-value form with a heavy upper tail."""
 
     def form(z: Array) -> Array:
-        y = 1 + shape * z
-        log = np.log(np.where(y > 0, y, 1.0))
-        return np.where(y > 0, -(1 + 1 / shape) * log - np.exp(np.minimum(-log / shape, 600.0)), LOWEST)
+        log, bend = soft_edge(1 + shape * z)
+        return -(1 + 1 / shape) * log - np.exp(np.minimum(-log / shape, 600.0)) + bend
 
     return form
 
@@ -100,9 +131,37 @@ def soft_uniform(half_width: float) -> LogDensity:
     return form
 
 
-def two_normals(distance: float) -> LogDensity:
-    """Two equal normal streams that many standard deviations apart."""
-    return lambda z: np.logaddexp(-0.5 * (z - distance / 2) ** 2, -0.5 * (z + distance / 2) ** 2)
+def two_normals(distance: float, share: float = 0.5) -> LogDensity:
+    """Two normal streams that many standard deviations apart; `share` belongs to the upper one."""
+    low, high = np.log(1 - share), np.log(share)
+    return lambda z: np.logaddexp(
+        low - 0.5 * (z + distance * share) ** 2, high - 0.5 * (z - distance * (1 - share)) ** 2
+    )
+
+
+def contaminated(share: float, spread: float) -> LogDensity:
+    """A normal process of which a share scatters more widely."""
+    return lambda z: np.logaddexp(np.log(1 - share) - 0.5 * z * z, np.log(share / spread) - 0.5 * (z / spread) ** 2)
+
+
+def soft_laplace(z: Array) -> Array:
+    """Exponential tails on both sides of a round top (the hyperbolic form)."""
+    return -1.5 * np.sqrt(1 + 2 * z * z)
+
+
+def above_edge(form: LogDensity) -> LogDensity:
+    """A form that begins sharply at 0."""
+    return lambda z: np.where(z > 0, form(np.where(z > 0, z, 1.0)), NOWHERE)
+
+
+def between_edges(power: float) -> LogDensity:
+    """(1 - z^2)^power between -1 and 1."""
+    return lambda z: np.where(np.abs(z) < 1, power * np.log1p(-np.minimum(z * z, 1 - 1e-12)), NOWHERE)
+
+
+def folded(mean: float) -> LogDensity:
+    """The size of a normal value with that mean."""
+    return lambda z: np.logaddexp(normal(z - mean), normal(z + mean))
 
 
 def mirrored(form: LogDensity) -> LogDensity:
@@ -120,9 +179,12 @@ SYMMETRIC: tuple[tuple[str, LogDensity], ...] = (
     ("normal", normal),
     ("soft uniform, 1.5", soft_uniform(1.5)),
     ("soft uniform, 3", soft_uniform(3)),
+    ("soft uniform, 5", soft_uniform(5)),
     ("soft uniform, 8", soft_uniform(8)),
     ("two normals, 2.5", two_normals(2.5)),
     ("two normals, 3.5", two_normals(3.5)),
+    ("5 % of threefold spread", contaminated(0.05, 3)),
+    ("soft Laplace", soft_laplace),
 )
 
 SKEWED: tuple[tuple[str, LogDensity], ...] = (
@@ -134,7 +196,6 @@ SKEWED: tuple[tuple[str, LogDensity], ...] = (
     ("soft exponential, 1.4", soft_exponential(1.4)),
     ("soft exponential, 2.5", soft_exponential(2.5)),
     ("soft exponential, 5", soft_exponential(5)),
-    ("soft exponential, 12", soft_exponential(12)),
     ("lognormal, 0.1", lognormal(0.1)),
     ("lognormal, 0.2", lognormal(0.2)),
     ("lognormal, 0.3", lognormal(0.3)),
@@ -153,10 +214,41 @@ SKEWED: tuple[tuple[str, LogDensity], ...] = (
     ("skew t, 1, 5 df", skew_student(1, 5)),
     ("skew t, 3, 5 df", skew_student(3, 5)),
     ("skew t, 3, 8 df", skew_student(3, 8)),
+    ("exponential", gamma(1)),
+    ("gamma, 2", gamma(2)),
+    ("gamma, 3", gamma(3)),
+    ("Weibull, 1.5", weibull(1.5)),
+    ("Weibull, 2", weibull(2)),
+    ("two normals, 2, one in five", two_normals(2, 0.2)),
+    ("two normals, 3, one in five", two_normals(3, 0.2)),
 )
+
+
+SHARP: tuple[tuple[str, LogDensity], ...] = (
+    ("sharp exponential", above_edge(lambda z: -z)),
+    ("sharp half normal", above_edge(normal)),
+    ("sharp folded normal, 0.7", above_edge(folded(0.7))),
+    ("sharp folded normal, 1.2", above_edge(folded(1.2))),
+    ("sharp truncated normal, -1", above_edge(lambda z: normal(z - 1))),
+    ("sharp Weibull, 1.5", above_edge(lambda z: 0.5 * np.log(z) - z**1.5)),
+    ("sharp Weibull, 2", above_edge(lambda z: np.log(z) - z * z)),
+    ("sharp gamma, 2", above_edge(lambda z: np.log(z) - z)),
+)
+"""Skewed forms with a sharp edge, whose ends are shorter than those of soft ones: for the upper bounds only."""
+
+SHARP_SYMMETRIC: tuple[tuple[str, LogDensity], ...] = (
+    ("sharp uniform", soft_uniform(40)),
+    ("sharp parabola", between_edges(1.0)),
+    ("sharp dome", between_edges(2.5)),
+)
+"""The same between two edges."""
 
 
 @lru_cache(maxsize=1)
 def guard_forms() -> tuple[tuple[str, LogDensity], ...]:
-    """Every guard form with its name, the mirrored ones named so."""
-    return SYMMETRIC + SKEWED + tuple((f"{name}, mirrored", mirrored(form)) for name, form in SKEWED)
+    """Every guard form with its name, the mirrored ones named so; the sharp ones last."""
+    return SYMMETRIC + _with_images(SKEWED) + SHARP_SYMMETRIC + _with_images(SHARP)
+
+
+def _with_images(forms: tuple[tuple[str, LogDensity], ...]) -> tuple[tuple[str, LogDensity], ...]:
+    return forms + tuple((f"{name}, mirrored", mirrored(form)) for name, form in forms)

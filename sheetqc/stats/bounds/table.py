@@ -26,7 +26,7 @@ TAIL = 0.00135
 NORMAL_IQR = 1.3489795
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class GuardTable:
     """Tables over u = arsinh(z), one row per shape, and the standardised outer quantiles (the median is 0)."""
 

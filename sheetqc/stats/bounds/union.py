@@ -16,8 +16,10 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from sheetqc.stats.bounds.border import border
-from sheetqc.stats.bounds.cuts import Cuts, cuts_for
-from sheetqc.stats.bounds.guard import GuardFits, guard_border, guard_fits
+from sheetqc.stats.bounds.cuts import Cuts, family_cuts, guard_cuts
+from sheetqc.stats.bounds.guard import guard_fits
+from sheetqc.stats.bounds.guard_region import Guard, guard_union
+from sheetqc.stats.bounds.region import Region, region_between
 from sheetqc.stats.bounds.table import TAIL
 from sheetqc.stats.errors import DataError
 from sheetqc.stats.families import Family, family
@@ -30,8 +32,9 @@ Prior = Literal["open", "kind", "model"]
 class UnionFit:
     """One candidate family in the union.
 
-    `admitted` tells whether it takes part in the bound; `triples` (m, 3) are then its share of the union, else empty.
-    `own_triples` are those of its own region, as if it were known to be the right one: its interval in a chart.
+    `admitted` tells whether its likelihood comes close enough to the best to be possible. `region` is what it
+    contributes to the bound (empty where it does not), `own` its region as if it were known to be the right family:
+    its interval in a chart.
     """
 
     family: str
@@ -41,38 +44,34 @@ class UnionFit:
     weight: float
     """Akaike weight among the candidates."""
     admitted: bool
-    triples: Array
-    own_triples: Array
-    points: Array
-    """Parameters behind `triples`, shape (m, k)."""
-    own_points: Array
+    region: Region
+    own: Region
 
+    @property
+    def triples(self) -> Array:
+        """Triples (m, 3) that the family contributes to the union."""
+        return self.region.triples
 
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Guard:
-    """Guard shapes in the union: shape rows of the guard table with places on the border, running in step."""
-
-    rows: NDArray[np.intp]
-    locations: Array
-    scales: Array
-    triples: Array
-    names: tuple[str, ...]
-    """Of the shapes admitted."""
+    @property
+    def own_triples(self) -> Array:
+        """Triples (m, 3) if the family were known to be the right one."""
+        return self.own.triples
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class ModelUnion:
-    """The union for one set of values; `best` is the highest log-likelihood over candidates and guard shapes."""
+    """The union for one set of values; `best` is the highest log-likelihood over candidates and guard shapes.
+
+    The lower bound of an index is its smallest value over `triples` (m, 3), the upper bound its largest.
+    """
 
     count: int
     confidence: float
     prior: Prior
     best: float
-    cuts: Cuts
     fits: tuple[UnionFit, ...]
     guard: Guard | None
     triples: Array = field(repr=False)
-    """All triples that take part in the bound, shape (m, 3)."""
 
     def fit(self, name: str) -> UnionFit | None:
         """The fit of a family, None when it is no candidate."""
@@ -88,7 +87,7 @@ class ModelUnion:
         fit = self.fit(name)
         if fit is None:
             raise DataError(f"{name} is no candidate")
-        alone = replace(fit, weight=1.0, admitted=True, triples=fit.own_triples, points=fit.own_points)
+        alone = replace(fit, weight=1.0, admitted=True, region=fit.own)
         return replace(self, prior="model", best=fit.log_likelihood, fits=(alone,), guard=None, triples=fit.own_triples)
 
 
@@ -97,13 +96,16 @@ def model_union(
 ) -> ModelUnion:
     """The union of the likelihood regions of candidate families.
 
+    With nothing known beforehand the bound rests on the guard shapes alone: they hold every candidate's shape with a
+    free origin, so that it does not depend on the list of candidates, the unit or the zero of the scale.
+
     Parameters
     ----------
     x : shape (n,), n at least 3, not all equal; every family must be able to take the values (`Family.refusal`)
     families : names of the candidates
     confidence : of the one-sided bounds
-    prior : what is known beforehand: nothing ("open"; guard shapes stand for families left out), the kind of
-        characteristic ("kind"; the candidates are a defensible list), or the family itself ("model")
+    prior : what is known beforehand: nothing ("open"), the kind of characteristic ("kind"; the candidates are a
+        defensible list), or the family itself ("model")
 
     Raises
     ------
@@ -113,27 +115,26 @@ def model_union(
     candidates = [family(name) for name in families]
     thetas = [member.fit(values) for member in candidates]
     heights = np.array([_height(m, values, t) for m, t in zip(candidates, thetas, strict=True)])
-    cuts = cuts_for(len(values), confidence, prior)
     guards = guard_fits(values) if prior == "open" else None
     best = float(max(heights.max(), np.max(guards.log_likelihood) if guards else -np.inf))
     aicc = np.array([_aicc(h, len(t), len(values)) for h, t in zip(heights, thetas, strict=True)])
     weights = np.exp(0.5 * (aicc.min() - aicc))
     weights = weights / weights.sum()
+    cuts = family_cuts(len(values), confidence)
     fits = tuple(
-        _union_fit(member, values, theta, float(height), float(score), float(weight), best, cuts)
+        _union_fit(member, values, theta, float(height), float(score), float(weight), best, cuts, prior)
         for member, theta, height, score, weight in zip(candidates, thetas, heights, aicc, weights, strict=True)
     )
-    guard = _guard(guards, values, best, cuts) if guards else None
-    parts = [fit.triples for fit in fits] + ([guard.triples] if guard else [])
+    guard = guard_union(guards, values, guard_cuts(len(values), confidence)) if guards else None
+    triples = guard.triples if guard else np.concatenate([fit.triples for fit in fits])
     return ModelUnion(
         count=len(values),
         confidence=confidence,
         prior=prior,
         best=best,
-        cuts=cuts,
         fits=fits,
         guard=guard,
-        triples=np.concatenate(parts),
+        triples=triples,
     )
 
 
@@ -165,54 +166,57 @@ def _aicc(height: float, k: int, n: int) -> float:
 
 
 def _union_fit(
-    member: Family, values: Array, theta: Array, height: float, aicc: float, weight: float, best: float, cuts: Cuts
+    member: Family,
+    values: Array,
+    theta: Array,
+    height: float,
+    aicc: float,
+    weight: float,
+    best: float,
+    cuts: Cuts,
+    prior: Prior,
 ) -> UnionFit:
-    room = cuts.union - (best - height)
-    drops = np.array([cuts.own, room] if room > 0 else [cuts.own])
+    deficit = best - height
+    drops = [cuts.lower, cuts.upper, *(c - deficit for c in (cuts.lower, cuts.upper) if c > deficit)]
     inner = member.internal(theta)
 
-    def log_likelihood(phi: Array) -> Array:
-        with np.errstate(all="ignore"):
-            value = member.log_likelihood(values, member.external(phi))
-        return np.where(np.isnan(value), -np.inf, value)
+    floor, ceiling = _free_ends(values)
 
-    borders = member.external(border(log_likelihood, inner, drops))
-    borders = np.concatenate([borders, np.broadcast_to(theta, (len(drops), 1, len(theta)))], axis=1)
-    own = borders[0]
-    points = borders[1] if room > 0 else borders[0][:0]
-    own_triples, triples = _finite(member, own), _finite(member, points)
+    def log_likelihood(phi: Array) -> Array:
+        theta_there = member.external(phi)
+        with np.errstate(all="ignore"):
+            value = member.log_likelihood(values, theta_there)
+            start, end = member.support(theta_there)
+        # an end that is fitted makes the likelihood unbounded where it meets a value
+        usable = ~np.isnan(value) & ((len(theta) < 3) | ((start <= floor) & (end >= ceiling)))
+        return np.where(usable, value, -np.inf)
+
+    borders = [_region(member, points) for points in member.external(border(log_likelihood, inner, np.array(drops)))]
+    fitted = _region(member, theta[None])
+    admitted = cuts.lower > deficit
+    nothing = Region(points=np.empty((0, len(theta))), triples=np.empty((0, 3)))
+    shared = nothing
+    if admitted and prior != "open":
+        shared = region_between(fitted, borders[2], borders[3] if len(borders) > 3 else nothing)
     return UnionFit(
         family=member.name,
         theta=theta,
         log_likelihood=height,
         aicc=aicc,
         weight=weight,
-        admitted=room > 0,
-        triples=triples[0],
-        own_triples=own_triples[0],
-        points=triples[1],
-        own_points=own_triples[1],
+        admitted=admitted,
+        region=shared,
+        own=region_between(fitted, borders[0], borders[1]),
     )
 
 
-def _finite(member: Family, points: Array) -> tuple[Array, Array]:
-    triples = triples_of(member, points) if len(points) else np.empty((0, 3))
+def _free_ends(values: Array) -> tuple[float, float]:
+    """How near to the values the ends of a support may come: 0.05 standard deviations, as in the fits."""
+    margin = 0.049 * float(values.std())
+    return float(values.min()) - margin, float(values.max()) + margin
+
+
+def _region(member: Family, points: Array) -> Region:
+    triples = triples_of(member, points)
     keep = np.all(np.isfinite(triples), axis=1)
-    return triples[keep], points[keep]
-
-
-def _guard(fits: GuardFits, values: Array, best: float, cuts: Cuts) -> Guard:
-    room = cuts.union - (best - fits.log_likelihood)
-    rows = np.flatnonzero(room > 0)
-    locations, scales = guard_border(fits, values, rows, room[rows])
-    table = fits.table
-    spread = np.stack(
-        [locations + scales * table.low[rows, None], locations, locations + scales * table.high[rows, None]], axis=-1
-    )
-    return Guard(
-        rows=np.repeat(rows, locations.shape[1]),
-        locations=locations.reshape(-1),
-        scales=scales.reshape(-1),
-        triples=spread.reshape(-1, 3),
-        names=tuple(table.names[row] for row in rows),
-    )
+    return Region(points=points[keep], triples=triples[keep])
