@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, replace
+from itertools import repeat
 
 from sheetqc import vocabulary
 from sheetqc.finding import Cell
@@ -73,15 +74,15 @@ def _tell(repeated: Sequence[Cell], summaries: Sequence[Cell], doubts: Doubts) -
         doubts.add(
             "repeated-heading",
             "note",
-            f"{counted(len(repeated), 'row')} ({places(repeated)}) repeat the headings and were passed over.",
+            f"{counted(len(repeated), 'row')} with the headings again ({places(repeated)}) passed over.",
             repeated,
         )
     if summaries:
         doubts.add(
             "summary-row",
             "note",
-            f"{counted(len(summaries), 'row')} ({places(summaries)}) hold totals, means or the like, by label or by "
-            "formula, and were not taken as measured values.",
+            f"{counted(len(summaries), 'row')} of totals, means or the like ({places(summaries)}), told by label or by "
+            "formula, not taken as measured values.",
             summaries,
         )
 
@@ -123,19 +124,21 @@ def _is_over_column(held: Held, row: int, column: int) -> bool:
 
 
 def _labelled(columns: Columns, numbers: Sequence[int]) -> list[Row]:
-    rows: list[Row] = []
-    for place, number in enumerate(numbers, start=1):
-        rows.append(
-            Row(
-                number=number,
-                place=place,
-                subgroup=_label(columns, "subgroup", number),
-                time=_label(columns, "time", number),
-                stream=_label(columns, "stream", number),
-                reason=_reason(columns, number),
-            )
+    labels = {name: _labels(columns, name, numbers) for name in ("subgroup", "time", "stream")}
+    reasons = [_reason(columns, number) for number in numbers] if "leave_out" in columns.fields else repeat("")
+    return [
+        Row(number=number, place=place, subgroup=subgroup, time=time, stream=stream, reason=reason)
+        for place, (number, subgroup, time, stream, reason) in enumerate(
+            zip(numbers, labels["subgroup"], labels["time"], labels["stream"], reasons, strict=False), start=1
         )
-    return rows
+    ]
+
+
+def _labels(columns: Columns, field: str, numbers: Sequence[int]) -> Iterable[str]:
+    column = columns.fields.get(field)
+    if column is None:
+        return repeat("")
+    return [columns.block.sheet.spread_text(number, column) for number in numbers]
 
 
 def _filled_down(rows: list[Row], columns: Columns, doubts: Doubts) -> list[Row]:
@@ -157,11 +160,6 @@ def _filled_down(rows: list[Row], columns: Columns, doubts: Doubts) -> list[Row]
         cells,
     )
     return filled
-
-
-def _label(columns: Columns, field: str, row: int) -> str:
-    column = columns.fields.get(field)
-    return "" if column is None else columns.block.sheet.spread_text(row, column)
 
 
 def _reason(columns: Columns, row: int) -> str:

@@ -17,6 +17,11 @@ _PLAIN_ROW = re.compile(
 )
 """A row of which every cell is empty, a number or a shared string; empty formatted rows are such rows too."""
 
+_EMPTY_ROWS = re.compile(
+    rb'(?:<row r="[0-9]++"[^<>]*+>(?:(?<=/>)|(?:<c r="[A-Z]++[0-9]++"(?: s="[0-9]++")?+ ?+(?:/>|></c>))*+</row>)\s*+)++'
+)
+"""Runs of rows that hold formats alone: a sheet may be formatted down to its last row."""
+
 FILLED_CELL = re.compile(rb'<c r="([A-Z]++)[0-9]++"(?: s="([0-9]++)")?+(?: t="([ns])")?+><v>([^<&]++)</v></c>')
 """Column letters, format, type and value of a filled cell in a plain row."""
 
@@ -56,6 +61,8 @@ class Slimmed:
     def _slimmed(self, data: bytes) -> bytes:
         if b"<![CDATA[" in data or b"<!--" in data:
             return data
+        if b"/></row>" in data or b"></c></row>" in data:
+            data = _EMPTY_ROWS.sub(b"", data)
         return _PLAIN_ROW.sub(self._taken, data)
 
     def _taken(self, match: re.Match[bytes]) -> bytes:
