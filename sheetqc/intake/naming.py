@@ -23,9 +23,15 @@ class Names:
     def __init__(self, characteristics: Sequence[Characteristic]) -> None:
         self.ids = tuple(c.id for c in characteristics)
         self._characteristics = tuple(characteristics)
+        self._known: dict[str, str | None] = {}
 
     def exact(self, text: str) -> str | None:
         """The Id of the characteristic whose Id or Name the text is, but for case, blanks and punctuation."""
+        if text not in self._known:
+            self._known[text] = self._exact(text)
+        return self._known[text]
+
+    def _exact(self, text: str) -> str | None:
         return (
             self._unique(folded(text), lambda c: folded(c.id))
             or self._unique(folded(text), lambda c: folded(c.name))

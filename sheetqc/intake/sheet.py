@@ -23,6 +23,10 @@ class Area:
         return self.top <= row <= self.bottom and self.left <= column <= self.right
 
 
+_TALL = 200
+"""Rows above which a merged area is kept in one list instead of at each of its rows."""
+
+
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Sheet:
     """A sheet; only cells that hold something are there.
@@ -37,6 +41,16 @@ class Sheet:
     hidden_columns: tuple[tuple[int, int], ...] = ()
     merged: tuple[Area, ...] = ()
     uncalculated: tuple[tuple[int, int], ...] = ()
+    _merged_on: dict[int, list[Area]] = field(init=False, repr=False, compare=False)
+
+    def __post_init__(self) -> None:
+        """Sorts merged areas by row, so that thousands of them cost no search; 0 keeps the tall ones."""
+        merged_on: dict[int, list[Area]] = {}
+        for area in self.merged:
+            rows = range(area.top, area.bottom + 1)
+            for row in rows if len(rows) <= _TALL else (0,):
+                merged_on.setdefault(row, []).append(area)
+        object.__setattr__(self, "_merged_on", merged_on)
 
     def at(self, row: int, column: int) -> Held | None:
         """What a cell holds, None when it is empty."""
@@ -62,7 +76,8 @@ class Sheet:
 
     def merge_at(self, row: int, column: int) -> Area | None:
         """The merged area a cell belongs to, None when it stands alone."""
-        return next((area for area in self.merged if area.holds(row, column)), None)
+        areas = (*self._merged_on.get(row, ()), *self._merged_on.get(0, ()))
+        return next((area for area in areas if area.holds(row, column)), None)
 
     def spread_text(self, row: int, column: int) -> str:
         """The text of a cell, or of the merged area it belongs to."""

@@ -442,3 +442,11 @@ def test_heading_that_may_mean_two_characteristics(tmp_path: Path) -> None:
     found = finding(study, "value-column-without-characteristic")
     assert cells(found) == ["'Run'!A2"]
     assert "D1 or D2" in found.text
+
+
+def test_thousands_of_merged_labels_are_read_at_once(tmp_path: Path) -> None:
+    entries: dict[str, Any] = {"A1": "qc:measurements", "A2": "Subgroup", "B2": "D12"}
+    entries |= {f"A{3 + 2 * i}": f"g{i}" for i in range(4000)} | column("B3", [12.0] * 8000)
+    merged = [f"A{3 + 2 * i}:A{4 + 2 * i}" for i in range(4000)]
+    sample = study_of(tmp_path, Page(entries, merged=merged)).samples[0]
+    assert sample.subgroups == tuple(f"g{i // 2}" for i in range(8000))
