@@ -147,9 +147,12 @@ def formats(package: Package, part: str | None) -> list[Format]:
     if data is None:
         return []
     try:
-        root = parsed(data)
-    except etree.XMLSyntaxError:
+        return _formats(parsed(data))
+    except (etree.XMLSyntaxError, ValueError):
         return []
+
+
+def _formats(root: Any) -> list[Format]:
     sections = {local(child.tag): child for child in root}
     codes = {n.get("numFmtId", ""): n.get("formatCode", "") for n in sections.get("numFmts", ())}
     struck = [_is_struck(font) for font in sections.get("fonts", ()) if local(font.tag) == "font"]

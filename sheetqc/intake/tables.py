@@ -30,8 +30,8 @@ def _column_area(root: Any, table: str, column: str) -> Area | None:
     columns = [c for child in root if local(child.tag) == "tableColumns" for c in child]
     for place, found in enumerate(columns):
         if found.get("name", "").casefold() == column:
-            heading = int(root.get("headerRowCount", "1"))
-            totals = int(root.get("totalsRowCount", "0"))
+            heading = 0 if root.get("headerRowCount") == "0" else 1
+            totals = 1 if root.get("totalsRowCount", "0") == "1" else 0
             left = area.left + place
             return Area(top=area.top + heading, left=left, bottom=area.bottom - totals, right=left)
     return None

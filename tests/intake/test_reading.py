@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import hashlib
 import io
+import random
 import shutil
 import struct
 import subprocess
@@ -107,8 +108,9 @@ def test_flipped_bytes_in_a_sheet(tmp_path: Path) -> None:
     _refused(path, DamagedWorkbook)
 
 
-def test_styles_that_are_broken_do_not_matter(tmp_path: Path) -> None:
-    path = _rewritten(_good(tmp_path / "g.xlsx"), tmp_path / "b.xlsx", "xl/styles.xml", b"<styleSheet><fonts><broken")
+@pytest.mark.parametrize("styles", [b"<styleSheet><fonts><broken", b"<s><cellXfs><xf fontId='x'/></cellXfs></s>", b""])
+def test_styles_that_are_broken_do_not_matter(tmp_path: Path, styles: bytes) -> None:
+    path = _rewritten(_good(tmp_path / "g.xlsx"), tmp_path / "b.xlsx", "xl/styles.xml", styles)
     assert intake.read(path).samples[0].values == tuple(VALUES)
 
 
@@ -333,3 +335,24 @@ def test_characteristics_alone_say_that_values_are_missing(tmp_path: Path) -> No
     error = _refused(write(tmp_path / "c.xlsx", {"Spec": CHARACTERISTICS}), NothingToAnswer)
     assert "qc:measurements" in str(error)
     assert {f.code for f in error.findings} == {"no-values"}
+
+
+@pytest.mark.parametrize("seed", range(80))
+def test_whatever_happens_to_a_file_the_error_is_ours(tmp_path: Path, seed: int) -> None:
+    chance = random.Random(seed)
+    good = _good(tmp_path / "good.xlsx")
+    with zipfile.ZipFile(good) as archive:
+        name = chance.choice([n for n in archive.namelist() if not n.startswith("docProps")])
+        data = bytearray(archive.read(name))
+    for _ in range(chance.randint(1, 4)):
+        place = chance.randrange(len(data))
+        data[place : place + chance.choice([0, 1, 1, 9])] = chance.choice(
+            [b"", b"<", b"-1", b"\xff", b"99999999999", b"x"]
+        )
+    path = _rewritten(good, tmp_path / "bad.xlsx", name, bytes(data))
+    try:
+        study = intake.read(path)
+    except WorkbookError as error:
+        assert str(error)
+    else:
+        assert intake.understood_text(study)
