@@ -13,7 +13,7 @@ from sheetqc.package.limits import DEFAULT_LIMITS, Limits
 from sheetqc.package.partname import PartName
 from sheetqc.package.refusals import damaged, missing, not_a_workbook, unsafe
 
-BLOCK = 1 << 20
+BLOCK = 1 << 16  # small enough to stay in the processor's cache
 
 
 class Archive:

@@ -26,7 +26,8 @@ STRICT_RELATION = _PAIRS[RELATION]
 RELATIONSHIPS = f"{_OLD}package/2006/relationships"
 CONTENT_TYPES = f"{_OLD}package/2006/content-types"
 
-_DECLARATION = re.compile(rb"(xmlns(?::[\w.-]+)?\s*=\s*)([\"'])([^\"']+)\2")
+# Where namespaces are named: in declarations, and where a drawing says what kind of object it holds.
+_NAMING = re.compile(rb"((?:xmlns(?::[\w.-]+)?|\buri)\s*=\s*)([\"'])([^\"']+)\2")
 # Shares that the strict dialect writes with a percent sign: element names and the attribute; a drawing counts in
 # thousandths of a percent, a chart in percent.
 _DRAWING_SHARES = frozenset(
@@ -62,7 +63,7 @@ def strict_namespaces(content: bytes) -> bytes:
         uri = match.group(3).decode("utf-8", "replace")
         return match.group(1) + match.group(2) + _PAIRS.get(uri, uri).encode("utf-8") + match.group(2)
 
-    return _DECLARATION.sub(swapped, content)
+    return _NAMING.sub(swapped, content)
 
 
 def write_shares_with_sign(root: Element) -> None:

@@ -8,7 +8,7 @@ from pathlib import Path
 
 from sheetqc.package.archive import opened
 from sheetqc.package.contenttypes import WORKBOOK_KINDS
-from sheetqc.package.filekind import container
+from sheetqc.package.filekind import archive_kind, container
 from sheetqc.package.limits import DEFAULT_LIMITS, Limits
 from sheetqc.package.mentions import mentions_own_names
 from sheetqc.package.names import marked_sheets
@@ -39,11 +39,13 @@ def check(path: Path | str, *, limits: Limits = DEFAULT_LIMITS) -> PackageFacts:
     MissingWorkbook, NotAWorkbook, EncryptedWorkbook, DamagedWorkbook, UnsafeWorkbook : it is no readable workbook
     """
     path = Path(path)
-    kind = container(path, limits)
-    if kind == "zip":
+    kind = container(path)
+    if kind not in FOREIGN_KINDS:
         with opened(path, limits) as archive:
-            package = Package(archive)
-            kind = WORKBOOK_KINDS.get(package.types.of(main_part(package)).lower(), kind)
+            kind = archive_kind(archive)
+            if kind not in FOREIGN_KINDS:
+                package = Package(archive)
+                kind = WORKBOOK_KINDS.get(package.types.of(main_part(package)).strip().lower(), kind)
             if kind not in FOREIGN_KINDS:
                 return _facts(Workbook(package))
     return PackageFacts(

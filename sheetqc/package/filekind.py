@@ -7,19 +7,18 @@ from typing import BinaryIO
 
 from sheetqc.package import compound
 from sheetqc.package.archive import Archive
-from sheetqc.package.limits import Limits
 from sheetqc.package.partname import PartName
 from sheetqc.package.refusals import encrypted, missing, not_a_workbook
 
 ODS = b"application/vnd.oasis.opendocument.spreadsheet"
 
 
-def container(path: Path, limits: Limits) -> str:
-    """ "zip" for a package (to be looked into), "xls" or "ods" for workbooks of another make.
+def container(path: Path) -> str:
+    """What holds the workbook: "zip" for an archive (to be looked into), "xls" for the old binary kind.
 
     Raises
     ------
-    MissingWorkbook, NotAWorkbook, EncryptedWorkbook, DamagedWorkbook, UnsafeWorkbook : what is met
+    MissingWorkbook, NotAWorkbook, EncryptedWorkbook : what is met
     """
     try:
         file = path.open("rb")
@@ -37,7 +36,7 @@ def container(path: Path, limits: Limits) -> str:
             return _old_kind(file)
         if start[:2] != b"PK":
             raise not_a_workbook("the file is neither a workbook nor an archive")
-        return _archive_kind(Archive(file, limits))
+        return "zip"
 
 
 def _old_kind(file: BinaryIO) -> str:
@@ -51,7 +50,8 @@ def _old_kind(file: BinaryIO) -> str:
     raise not_a_workbook("the file is a document of another program")
 
 
-def _archive_kind(archive: Archive) -> str:
+def archive_kind(archive: Archive) -> str:
+    """What an archive holds: "zip" for a package (to be looked into), "ods" for a workbook of another make."""
     mimetype = archive.member(PartName("mimetype"))
     if mimetype is None:
         return "zip"

@@ -4,7 +4,13 @@ from __future__ import annotations
 
 import posixpath
 from dataclasses import dataclass
+from functools import lru_cache
 from urllib.parse import quote, unquote
+
+
+@lru_cache(maxsize=1 << 15)
+def _key(text: str) -> str:
+    return unquote(text.replace("\\", "/")).lstrip("/").lower()
 
 
 @dataclass(frozen=True, slots=True)
@@ -16,7 +22,7 @@ class PartName:
     @property
     def key(self) -> str:
         """What two spellings of one name have in common (case, slashes and escapes do not count)."""
-        return unquote(self.text.replace("\\", "/")).lstrip("/").lower()
+        return _key(self.text)
 
     @property
     def folder(self) -> str:

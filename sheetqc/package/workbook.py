@@ -12,7 +12,7 @@ from lxml import etree
 from sheetqc.package.archive import opened
 from sheetqc.package.contenttypes import WORKBOOK_KINDS
 from sheetqc.package.dialect import MAIN, RELATION, STRICT_MAIN, STRICT_RELATION
-from sheetqc.package.filekind import container
+from sheetqc.package.filekind import archive_kind, container
 from sheetqc.package.limits import DEFAULT_LIMITS, Limits
 from sheetqc.package.package import ROOT, Package
 from sheetqc.package.partname import PartName
@@ -44,8 +44,7 @@ class Workbook:
         self.package = package
         self.name = main_part(package)
         self.kind = _kind(package.types.of(self.name))
-        if self.kind in FOREIGN_KINDS:
-            raise cannot_graft(FOREIGN_KINDS[self.kind])
+        _refuse_foreign(self.kind)
         self.content = package.content(self.name)
         self.root = parsed(self.content, self.name.text)
         if namespace(self.root) not in (MAIN, STRICT_MAIN):
@@ -134,6 +133,11 @@ def _kind(content_type: str) -> str:
     return kind
 
 
+def _refuse_foreign(kind: str) -> None:
+    if kind in FOREIGN_KINDS:
+        raise cannot_graft(FOREIGN_KINDS[kind])
+
+
 @contextmanager
 def opened_workbook(path: Path, limits: Limits = DEFAULT_LIMITS) -> Iterator[Workbook]:
     """The workbook of a file, open for reading.
@@ -143,8 +147,7 @@ def opened_workbook(path: Path, limits: Limits = DEFAULT_LIMITS) -> Iterator[Wor
     CannotGraft : a workbook that is not a package of this format
     MissingWorkbook, NotAWorkbook, EncryptedWorkbook, DamagedWorkbook, UnsafeWorkbook : what is met
     """
-    kind = container(path, limits)
-    if kind in FOREIGN_KINDS:
-        raise cannot_graft(FOREIGN_KINDS[kind])
+    _refuse_foreign(container(path))
     with opened(path, limits) as archive:
+        _refuse_foreign(archive_kind(archive))
         yield Workbook(Package(archive))
