@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import contextlib
 import hashlib
 import io
 import random
@@ -350,9 +351,5 @@ def test_whatever_happens_to_a_file_the_error_is_ours(tmp_path: Path, seed: int)
             [b"", b"<", b"-1", b"\xff", b"99999999999", b"x"]
         )
     path = _rewritten(good, tmp_path / "bad.xlsx", name, bytes(data))
-    try:
-        study = intake.read(path)
-    except WorkbookError as error:
-        assert str(error)
-    else:
-        assert intake.understood_text(study)
+    with contextlib.suppress(WorkbookError):
+        assert intake.understood_text(intake.read(path))
