@@ -86,13 +86,17 @@ class Fit:
         return self.model.upper_quantile(q, self.theta)
 
 
-def fit(x: ArrayLike, family: str | Family) -> Fit:
+def fit(
+    x: ArrayLike, family: str | Family, *, natural_lower: float | None = None, natural_upper: float | None = None
+) -> Fit:
     """Maximum-likelihood fit of a family.
 
     Parameters
     ----------
     x : shape (n,), measured values
     family : name of a family, or the family itself
+    natural_lower, natural_upper : bounds no value can pass, for the families between given bounds (beta, truncated
+        normal, bounded Johnson); the others have no use for them
 
     Returns
     -------
@@ -104,6 +108,8 @@ def fit(x: ArrayLike, family: str | Family) -> Fit:
     """
     values = np.array(measured_values(x))
     model = named_family(family)
+    if natural_lower is not None or natural_upper is not None:
+        model = model.within(natural_lower, natural_upper)
     refusal = model.refusal(values)
     if refusal:
         raise DataError(f"the {model.title} model {refusal}")

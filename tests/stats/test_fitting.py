@@ -78,3 +78,24 @@ def test_an_unknown_family_is_named() -> None:
 
 def test_aicc_is_infinite_when_there_are_too_few_values() -> None:
     assert fit([1.0, 2.0, 4.0], "normal").aicc == np.inf
+
+
+def test_natural_bounds_reach_the_families_that_use_them() -> None:
+    x = [6.1, 7.4, 5.9, 6.6, 8.1, 6.9, 7.7]
+    assert fit(x, "beta", natural_lower=5.0, natural_upper=9.0).model.support([1.0, 1.0]) == (5.0, 9.0)
+    with pytest.raises(DataError, match="needs values between 0 and 1"):
+        fit(x, "beta")
+    plain, cut = fit(x, "truncated_normal"), fit(x, "truncated_normal", natural_lower=5.8)
+    assert plain.parameters["mean"] == pytest.approx(np.mean(x))
+    assert cut.parameters["mean"] < plain.parameters["mean"]
+    assert len(fit(x, "johnson_sb", natural_lower=5.0, natural_upper=9.0).theta) == 2
+    assert fit(x, "weibull", natural_lower=0.0).log_likelihood == fit(x, "weibull").log_likelihood
+    with pytest.raises(DataError, match="needs values between 6 and 9"):
+        fit(x, "truncated_normal", natural_lower=6.0, natural_upper=9.0)
+
+
+def test_a_border_fit_has_no_standard_error_of_that_parameter() -> None:
+    x = np.abs(np.random.default_rng(1).standard_t(4, 60))
+    r = fit(x, "folded_normal")
+    assert r.parameters["mu"] == 0
+    assert all(e is None or e > 0 for e in r.standard_errors.values())
