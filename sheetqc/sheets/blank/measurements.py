@@ -31,7 +31,7 @@ def fill(sheet: Any, look: Look, plan: Plan) -> None:
         _follow(sheet, look, plan, left + place, plan.first_characteristic + place + 1, first + 1, last + 1)
     for row in range(first, min(last, first + _LIT_ROWS - 1) + 1):
         for column in range(min(right, left + _LIT_COLUMNS - 1) + 1):
-            sheet.write_blank(row, column, None, look.entry if column >= left else look.entry_left)
+            sheet.write_blank(row, column, None, look.entry_on(row - first, left=column < left))
     _conditions(sheet, look, first, last, left, right)
     _check(sheet, first, last, left, right)
 

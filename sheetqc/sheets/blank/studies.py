@@ -178,7 +178,7 @@ def _table(
         sheet.write(3, column, titles[field], look.needed if field in needed else look.optional)
         message(sheet, 3, column, titles[field], about[field])
         for row in range(4, 4 + rows):
-            sheet.write_blank(row, column, None, look.entry)
+            sheet.write_blank(row, column, None, look.entry_on(row - 4))
     sheet.freeze_panes(4, 0)
     sheet.repeat_rows(0, 3)
     return 4, 3 + rows
