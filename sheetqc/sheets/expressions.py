@@ -25,8 +25,8 @@ _NEWER = (
 )
 _CALL = re.compile(r"(?<![\w.])(" + "|".join(re.escape(name) for name in _NEWER) + r")\(")
 
-TAIL = "0.00135"
-"""Probability beyond each of the outer quantiles of ISO 22514-2, as formulas write it."""
+TAIL = 0.00135
+"""Probability beyond each of the outer quantiles of ISO 22514-2."""
 
 
 @lru_cache(maxsize=512)

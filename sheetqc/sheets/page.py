@@ -25,6 +25,9 @@ WIDE_LINE = 150
 """The same for the whole width of the page."""
 
 FINDING_LINE = 125
+MOST_ROWS = 18
+"""Rows up to which a picture grows."""
+
 MOST_FINDINGS = 6
 LEVELS = ("stop", "caution", "note")
 
@@ -180,7 +183,7 @@ def _write_section(workbook: Workbook, job: Job, work: Workings, row: int, numbe
         return _write_findings(job, _write_wide(pen, row, words, WIDE_LINE))
     below = _write_words(pen, row, words)
     below = write_caption(job, TABLES[key](job, work, below), key)
-    pictures = _insert_charts(workbook, job, work, row, key)
+    pictures = _insert_charts(workbook, job, work, row, key, below - row)
     return max(below, pictures) + 1
 
 
@@ -230,16 +233,19 @@ def lines_of(words: str, characters: int) -> int:
     return max(1, sum(-(-len(part) // characters) for part in words.split("\n")))
 
 
-def _insert_charts(workbook: Workbook, job: Job, work: Workings, row: int, question: str) -> int:
-    """The pictures beside an answer, one below the other; gives the row below."""
+def _insert_charts(workbook: Workbook, job: Job, work: Workings, row: int, question: str, least: int) -> int:
+    """The pictures beside an answer, one below the other; gives the row below.
+
+    A picture that stands alone grows with the words beside it, within reason.
+    """
     asked, n = job.assessment.characteristic, len(job.assessment.sample.values)
-    for kind in CHARTS:
-        if kind.question != question:
-            continue
-        drawing = kind.draw(ChartRequest(workbook=workbook, job=job, workings=work, rows=kind.rows))
+    kinds = [kind for kind in CHARTS if kind.question == question]
+    for kind in kinds:
+        rows = kind.rows if len(kinds) > 1 else max(kind.rows, min(least, MOST_ROWS))
+        drawing = kind.draw(ChartRequest(workbook=workbook, job=job, workings=work, rows=rows))
         if drawing is None:
             continue
         options = {"object_position": 2, "description": job.say(f"alt.{kind.key}", id=asked.id, n=n)}
         job.pen.sheet.insert_chart(row, layout.PICTURE_COLUMN, drawing.chart, options)
-        row += kind.rows
+        row += rows
     return row

@@ -28,9 +28,9 @@ class ChartKind:
 
 CHARTS: tuple[ChartKind, ...] = (
     ChartKind(key="time_order", question="data", rows=9, draw=time_order),
-    ChartKind(key="location", question="steady", rows=8, draw=location_track),
+    ChartKind(key="location", question="steady", rows=7, draw=location_track),
     ChartKind(key="spread", question="steady", rows=6, draw=spread_track),
     ChartKind(key="histogram", question="shape", rows=12, draw=histogram),
-    ChartKind(key="probability", question="shape", rows=12, draw=probability_plot),
+    ChartKind(key="probability", question="shape", rows=11, draw=probability_plot),
     ChartKind(key="candidates", question="capable", rows=12, draw=candidate_indices),
 )

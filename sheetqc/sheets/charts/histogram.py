@@ -25,7 +25,7 @@ LABELLED = 0.15
 
 ARROW = {"color": MUTED, "width": 0.75}
 
-OVERLAP = 1.6
+OVERLAP = 2.2
 """Pixels by which stripes overlap, lest rounding leaves gaps."""
 
 

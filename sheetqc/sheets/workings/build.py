@@ -23,7 +23,7 @@ from sheetqc.sheets.workings.quantities import Quantities
 from sheetqc.sheets.workings.regions import write_regions
 from sheetqc.sheets.workings.summary import add_summary
 from sheetqc.sheets.workings.values import Values, write_values
-from sheetqc.sheets.workings.verdict import add_status, add_verdict
+from sheetqc.sheets.workings.verdict import add_settings, add_status, add_verdict
 
 AXIS_PIXELS = layout.PICTURE_WIDTH - 54 - 14
 
@@ -58,18 +58,20 @@ def write_workings(job: Job) -> Workings:
         return Workings(inputs=inputs, quantities=quantities, lines=lines)
     limits = limits_of(inputs)
     values = write_values(job, ground)
+    quantities.constant("confidence", job.assessment.confidence, "0%", name="Confidence")
     add_summary(job, quantities, values)
+    add_settings(job, quantities, inputs, limits)
     candidates = None
     if job.has_spread and inputs.model is not None:
         regions = write_regions(job, ground)
-        candidates = write_candidates(job, ground, limits, regions.own)
+        candidates = write_candidates(job, ground, limits, regions.own, quantities["unchanged"])
     if candidates is not None:
         add_capability(job, quantities, inputs, limits, candidates, regions.whole)
     control = write_control(job, ground, quantities, values)
     add_within(job, quantities, limits)
     add_observed(job, quantities, limits, values)
     add_verdict(job, quantities, inputs)
-    add_status(job, quantities, inputs, limits)
+    add_status(job, quantities)
     pictures = Workings(
         inputs=inputs,
         quantities=quantities,

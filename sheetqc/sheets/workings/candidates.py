@@ -12,7 +12,10 @@ from sheetqc.sheets.expressions import TAIL, constant, literal, of_family
 from sheetqc.sheets.job import SELECTABLE, Job
 from sheetqc.sheets.workings.ground import FIRST, Ground
 from sheetqc.sheets.workings.index import Limits, Region, greatest_ppk, least_ppk, pp, ppk
+from sheetqc.sheets.workings.reach import beyond_reach, drawn_as, drawn_references
 from sheetqc.stats.families import Family, family
+
+Quantile = Callable[[Family, tuple[str, ...], ModelFit, float, float], tuple[str, Value]]
 
 HEADS = (
     "model", "p1", "p2", "p3", "x_low", "x_median", "x_high", "Pp", "Ppk", "Ppk_lower", "Ppk_upper",
@@ -54,14 +57,20 @@ class Candidates:
 
     def expressions(self, kind: str, **arguments: str) -> tuple[str, ...]:
         """An expression of every selectable candidate, such as its density at {x}."""
-        return tuple(
-            of_family(family(fit.family), kind, references, **arguments)
-            for fit, references in zip(self.fits[:SELECTABLE], self.parameters, strict=False)
-        )
+        told = []
+        for i, (fit, parameters) in enumerate(zip(self.fits[:SELECTABLE], self.parameters, strict=False)):
+            references = drawn_references(fit, parameters, self.low.at(i), self.median.at(i), self.high.at(i))
+            told.append(of_family(drawn_as(fit)[0], kind, references, **arguments))
+        return tuple(told)
 
 
-def write_candidates(job: Job, ground: Ground, limits: Limits, regions: Sequence[Region | None]) -> Candidates | None:
-    """Writes the candidates as they are shown; `regions` runs in step with them."""
+def write_candidates(
+    job: Job, ground: Ground, limits: Limits, regions: Sequence[Region | None], unchanged: Placed
+) -> Candidates | None:
+    """Writes the candidates as they are shown; `regions` runs in step with them.
+
+    `unchanged` tells whether what cannot follow still holds.
+    """
     fits = job.models
     if not fits:
         return None
@@ -76,16 +85,16 @@ def write_candidates(job: Job, ground: Ground, limits: Limits, regions: Sequence
     def below_one_another(key: str, cells: Sequence[tuple[str, Value]], number_format: str) -> Column:
         return pen.formulas(FIRST, column[key], [c[0] for c in cells], [c[1] for c in cells], number_format)
 
-    def quantiles(key: str, of: Callable[[Family, tuple[str, ...], float], str], values: Sequence[float]) -> Column:
-        formulas = [of(m, p, v) for m, p, v in zip(members, parameters, values, strict=True)]
-        return below_one_another(key, list(zip(formulas, values, strict=True)), look.mean)
+    def quantiles(key: str, of: Quantile, p: float, values: Sequence[float]) -> Column:
+        told = [of(m, r, f, p, v) for m, r, f, v in zip(members, parameters, fits, values, strict=True)]
+        return below_one_another(key, told, look.mean)
 
-    low = quantiles("x_low", lambda m, p, v: _quantile(m, p, TAIL, v), [f.quantiles.low for f in fits])
-    median = quantiles("x_median", lambda m, p, v: _quantile(m, p, "0.5", v), [f.quantiles.median for f in fits])
-    high = quantiles("x_high", _upper_quantile, [f.quantiles.high for f in fits])
+    low = quantiles("x_low", _quantile, TAIL, [f.quantiles.low for f in fits])
+    median = quantiles("x_median", _quantile, 0.5, [f.quantiles.median for f in fits])
+    high = quantiles("x_high", _upper_quantile, TAIL, [f.quantiles.high for f in fits])
     rows = range(len(fits))
     triple = [(low.at(i), median.at(i), high.at(i)) for i in rows]
-    rates = [_rates(m, p, f, limits) for m, p, f in zip(members, parameters, fits, strict=True)]
+    rates = [_rates(m, p, f, limits, unchanged) for m, p, f in zip(members, parameters, fits, strict=True)]
     below = below_one_another("below", [r[0] for r in rates], decimals.RATE)
     above = below_one_another("above", [r[1] for r in rates], decimals.RATE)
     return Candidates(
@@ -141,31 +150,51 @@ def _parameter_references(row: int, column: int, fit: ModelFit) -> tuple[str, ..
     return tuple(Placed(row, column + index, value).ref for index, (_, value) in enumerate(fit.parameters))
 
 
-def _quantile(member: Family, parameters: tuple[str, ...], p: str, value: float) -> str:
+def _quantile(member: Family, parameters: tuple[str, ...], fit: ModelFit, p: float, value: float) -> tuple[str, Value]:
     """The quantile; where it has no closed form, one Newton step from the value of the analysis."""
+    if beyond_reach(fit):
+        return constant(value), value
     if member.worksheet.quantile:
-        return of_family(member, "quantile", parameters, p=p)
-    return of_family(member, "correction", parameters, p=p, start=constant(value))
+        return of_family(member, "quantile", parameters, p=constant(p)), value
+    theta = [number for _, number in fit.parameters]
+    step = (p - float(member.cdf(value, theta))) / float(member.density(value, theta))
+    return of_family(member, "correction", parameters, p=constant(p), start=constant(value)), value + step
 
 
-def _upper_quantile(member: Family, parameters: tuple[str, ...], value: float) -> str:
+def _upper_quantile(
+    member: Family, parameters: tuple[str, ...], fit: ModelFit, q: float, value: float
+) -> tuple[str, Value]:
+    if beyond_reach(fit):
+        return constant(value), value
     if member.worksheet.upper_quantile:
-        return of_family(member, "upper_quantile", parameters, q=TAIL)
-    return of_family(member, "upper_correction", parameters, q=TAIL, start=constant(value))
+        return of_family(member, "upper_quantile", parameters, q=constant(q)), value
+    theta = [number for _, number in fit.parameters]
+    step = (float(member.survival(value, theta)) - q) / float(member.density(value, theta))
+    return of_family(member, "upper_correction", parameters, q=constant(q), start=constant(value)), value + step
 
 
 def _rates(
-    member: Family, parameters: tuple[str, ...], fit: ModelFit, limits: Limits
+    member: Family, parameters: tuple[str, ...], fit: ModelFit, limits: Limits, unchanged: Placed
 ) -> tuple[tuple[str, Value], tuple[str, Value]]:
     """Expected parts per million below and above."""
     theta = [value for _, value in fit.parameters]
     lower, upper = limits.lower, limits.upper
-    below = f"IF(ISNUMBER({lower.ref}),1E6*({of_family(member, 'cdf', parameters, x=lower.ref)}),{literal(NONE)})"
-    above = f"IF(ISNUMBER({upper.ref}),1E6*({of_family(member, 'survival', parameters, x=upper.ref)}),{literal(NONE)})"
-    return (
-        (below, 1e6 * float(member.cdf(lower.number, theta)) if lower.is_number else NONE),
-        (above, 1e6 * float(member.survival(upper.number, theta)) if upper.is_number else NONE),
-    )
+    values: list[Value] = [
+        1e6 * float(member.cdf(lower.number, theta)) if lower.is_number else NONE,
+        1e6 * float(member.survival(upper.number, theta)) if upper.is_number else NONE,
+    ]
+    if beyond_reach(fit):
+        below, above = (
+            literal(NONE) if isinstance(v, str) else f"IF({unchanged.ref}=1,{constant(v)},{literal(NONE)})"
+            for v in values
+        )
+    else:
+        cdf, survival = (
+            of_family(member, kind, parameters, x=cell.ref) for kind, cell in (("cdf", lower), ("survival", upper))
+        )
+        below = f"IF(ISNUMBER({lower.ref}),1E6*({cdf}),{literal(NONE)})"
+        above = f"IF(ISNUMBER({upper.ref}),1E6*({survival}),{literal(NONE)})"
+    return (below, values[0]), (above, values[1])
 
 
 def _total(limits: Limits, below: Placed, above: Placed) -> tuple[str, Value]:

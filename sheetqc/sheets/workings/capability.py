@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable
 
 import numpy as np
-from scipy.special import betaincinv
+from scipy.special import betaincinv, ndtri
 
 from sheetqc.assessment import Estimate
 from sheetqc.sheets.cells import NONE, Column, Placed, Value
@@ -50,8 +50,8 @@ def add_capability(
     chosen("above", candidates.above, RATE, "Expected_ppm_above")
     chosen("total", candidates.total, RATE, "Expected_ppm")
     expected = job.assessment.nonconforming.expected
-    quantities.constant("total_lower", _part(expected, "lower"), RATE, name="Expected_ppm_lower")
-    quantities.constant("total_upper", _part(expected, "upper"), RATE, name="Expected_ppm_upper")
+    quantities.as_analysed("total_lower", _part(expected, "lower"), RATE, name="Expected_ppm_lower")
+    quantities.as_analysed("total_upper", _part(expected, "upper"), RATE, name="Expected_ppm_upper")
 
 
 def _part(estimate: Estimate | None, part: str) -> float | None:
@@ -96,9 +96,49 @@ def add_within(job: Job, quantities: Quantities, limits: Limits) -> None:
     quantities.add(
         "Cpk", nearer, min(sides) if sides else NONE, INDEX, name="Cpk", analysed=_part(found.Cpk, "estimate")
     )
-    for index, estimate in (("Cp", found.Cp), ("Cpk", found.Cpk)):
-        for part in ("lower", "upper"):
-            quantities.constant(f"{index}_{part}", _part(estimate, part), INDEX, name=f"{index}_{part}")
+    _add_proportional(quantities, "Cp", found.Cp)
+    degrees = _degrees(found.Cpk, len(job.values), job.assessment.confidence) if limits.both else None
+    if degrees is None:
+        _add_proportional(quantities, "Cpk", found.Cpk)
+    else:
+        _add_normal_bounds(job, quantities, degrees)
+
+
+def _add_proportional(quantities: Quantities, index: str, found: Estimate | None) -> None:
+    """Bounds in the proportion they had at the analysis: exact for Cp, close for a one-sided Cpk."""
+    estimate = quantities[index]
+    for part in ("lower", "upper"):
+        key, bound = f"{index}_{part}", _part(found, part)
+        if bound is None or not estimate.is_number or estimate.number == 0:
+            quantities.constant(key, NONE, INDEX, name=key)
+            continue
+        share = quantities.constant(f"{key}_share", (bound - estimate.number) / abs(estimate.number), "0.0000")
+        formula = f"IF(ISNUMBER({estimate.ref}),{estimate.ref}+ABS({estimate.ref})*{share.ref},{_NO})"
+        quantities.add(key, formula, bound, INDEX, analysed=bound, name=key)
+
+
+def _degrees(found: Estimate | None, n: int, confidence: float) -> float | None:
+    """Degrees of freedom behind bounds that lie alike on both sides (Bissell 1990); None for other bounds."""
+    if found is None or found.estimate is None or found.lower is None or found.upper is None:
+        return None
+    half = (found.upper - found.lower) / 2
+    rest = (half / float(ndtri(confidence))) ** 2 - 1 / (9 * n)
+    alike = abs(found.upper + found.lower - 2 * found.estimate) <= 1e-9 * half
+    return found.estimate**2 / (2 * rest) if alike and rest > 0 and found.estimate != 0 else None
+
+
+def _add_normal_bounds(job: Job, quantities: Quantities, degrees: float) -> None:
+    """Bounds of Cpk with two limits (Bissell 1990)."""
+    nu = quantities.constant("within_degrees", degrees, "0.0")
+    estimate, n, q = quantities["Cpk"], quantities["n"], quantities["confidence"]
+    half = filled("NORM.S.INV({q})*SQRT(1/(9*{n})+{c}^2/(2*{nu}))", q=q.ref, n=n.ref, c=estimate.ref, nu=nu.ref)
+    found = job.assessment.indices.Cpk
+    for part, sign in (("lower", "-"), ("upper", "+")):
+        bound = _part(found, part)
+        formula = f"IF(ISNUMBER({estimate.ref}),{estimate.ref}{sign}{half},{_NO})"
+        quantities.add(
+            f"Cpk_{part}", formula, NONE if bound is None else bound, INDEX, analysed=bound, name=f"Cpk_{part}"
+        )
 
 
 def add_observed(job: Job, quantities: Quantities, limits: Limits, values: Values) -> None:
@@ -115,7 +155,7 @@ def add_observed(job: Job, quantities: Quantities, limits: Limits, values: Value
         f"+IF(ISNUMBER({upper.ref}),SUMPRODUCT(--({x}>{upper.ref})),0))"
     )
     c = quantities.add("observed", formula, count if limits.any else NONE, COUNT, name="Observed")
-    confidence = quantities.constant("confidence", job.assessment.confidence, "0%", name="Confidence")
+    confidence = quantities["confidence"]
     below = filled(
         "IF(ISNUMBER({c}),IF({c}=0,0,1E6*BETA.INV(1-{q},{c},{n}-{c}+1)),{no})",
         c=c.ref,

@@ -15,7 +15,7 @@ from sheetqc.sheets.expressions import choice, constant
 from sheetqc.sheets.job import Job
 from sheetqc.sheets.workings.candidates import Candidates
 from sheetqc.sheets.workings.ground import FIRST, Ground
-from sheetqc.stats.families import family
+from sheetqc.sheets.workings.reach import drawn_as
 
 EVENLY, WITHIN = 16, 34
 """Points spread evenly over the axis, and points where the models have their body."""
@@ -42,7 +42,7 @@ def write_curve(job: Job, ground: Ground, candidates: Candidates, selector: Plac
     pen = job.pen
     x = pen.numbers(FIRST, column, [float(p) for p in places])
     in_use = candidates.fits[int(selector.number) - 1]
-    member, theta = family(in_use.family), [value for _, value in in_use.parameters]
+    member, theta = drawn_as(in_use)
     # {x} is kept as a placeholder, so that the long expression is put together only once
     density = choice(selector.ref, candidates.expressions("density", x="\0"))
     cdf = choice(selector.ref, candidates.expressions("cdf", x="\0"))

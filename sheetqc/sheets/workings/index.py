@@ -27,6 +27,11 @@ class Limits:
         return f"COUNT({self.lower.ref},{self.upper.ref})"
 
     @property
+    def both(self) -> bool:
+        """Whether there are two limits now."""
+        return self.lower.is_number and self.upper.is_number
+
+    @property
     def any(self) -> bool:
         """Whether there is a limit now."""
         return self.lower.is_number or self.upper.is_number

@@ -84,7 +84,7 @@ def _lengths(job: Job, column: int, index: list[Placed], end: list[Placed], sign
     formulas, values = [], []
     for here, there in zip(index, end, strict=True):
         first, second = (there, here) if sign > 0 else (here, there)
-        formulas.append(f"IF(COUNT({here.ref},{there.ref})=2,MAX(0,{first.ref}-{second.ref}),0)")
+        formulas.append(f"IF(COUNT({here.ref},{there.ref})=2,ROUND(MAX(0,{first.ref}-{second.ref}),6),0)")
         known = here.is_number and there.is_number
-        values.append(max(0.0, first.number - second.number) if known else 0.0)
+        values.append(round(max(0.0, first.number - second.number), 6) if known else 0.0)
     return job.pen.formulas(FIRST, column, formulas, values, "0.00")

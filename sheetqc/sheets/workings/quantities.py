@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from sheetqc.sheets.cells import Placed, Value
+from sheetqc.sheets.cells import NONE, Placed, Value
+from sheetqc.sheets.expressions import literal
 from sheetqc.sheets.job import Job
 from sheetqc.sheets.workings.ground import FIRST, Ground
 
@@ -60,6 +61,14 @@ class Quantities:
         """A quantity as a formula; `analysed` is written beside it as it was at the analysis."""
         placed = self._job.pen.formula(self._row, self._column + 1, formula, value, "small", number_format)
         return self._added(key, placed, number_format, analysed, name)
+
+    def as_analysed(self, key: str, value: float | None, number_format: str, *, name: str = "") -> Placed:
+        """A number that cannot follow: shown as long as values, limits and model are those of the analysis."""
+        if value is None:
+            return self.constant(key, NONE, number_format, name=name)
+        then = Placed(self._row, self._column + 2, value)
+        formula = f"IF({self['unchanged'].ref},{then.ref},{literal(NONE)})"
+        return self.add(key, formula, value, number_format, analysed=value, name=name)
 
     def constant(self, key: str, value: Value | None, number_format: str = "", *, name: str = "") -> Placed:
         """A quantity that a spreadsheet cannot compute; None leaves the cell empty."""

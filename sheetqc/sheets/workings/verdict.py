@@ -97,21 +97,30 @@ def _two_decimals(cell: Placed) -> tuple[str, str]:
     return formula, f"{cut(cell.number):.2f}" if cell.is_number else NONE
 
 
-def add_status(job: Job, quantities: Quantities, inputs: Inputs, limits: Limits) -> None:
-    """Adds whether values and settings still are those of the analysis, and says so in a line."""
+def add_settings(job: Job, quantities: Quantities, inputs: Inputs, limits: Limits) -> None:
+    """Adds what values and settings were at the analysis, and whether they still are."""
     say: Words = job.say
-    same = _same_values(quantities)
-    values = quantities.add("same_values", f"IF({same},{literal(say('yes'))},{literal(say('no'))})", say("yes"))
-    settings = [
-        _same(cell, quantities.constant(f"analysed.{key}", cell.value, job.decimals.value))
+    words = literal(say("yes")), literal(say("no"))
+    values = quantities.add("same_values", f"IF({_same_values(quantities)},{words[0]},{words[1]})", say("yes"))
+    told = {
+        key: _same(cell, quantities.constant(f"analysed.{key}", cell.value, job.decimals.value))
         for key, cell in (("lower", limits.lower), ("upper", limits.upper), ("requirement", inputs.requirement))
-    ]
+    }
     if inputs.model is not None:
         title = quantities.constant("analysed.model", inputs.model.value)
-        settings.append(f"{inputs.model.ref}={title.ref}")
+        told["model"] = f"{inputs.model.ref}={title.ref}"
+    same = ",".join(told.values())
+    quantities.add("same_settings", f"IF(AND({same}),{words[0]},{words[1]})", say("yes"))
+    shape = ",".join(told[key] for key in told if key != "requirement")
+    quantities.add("unchanged", f"IF(AND({values.ref}={words[0]},{shape}),1,0)", 1)
+
+
+def add_status(job: Job, quantities: Quantities) -> None:
+    """Adds the line that says whether the sheet still shows the analysis."""
+    say, yes = job.say, literal(job.say("yes"))
     formula = first_true(
-        (f"{values.ref}<>{literal(say('yes'))}", literal(say("status.stale"))),
-        (f"NOT(AND({','.join(settings)}))", literal(say("status.changed"))),
+        (f"{quantities['same_values'].ref}<>{yes}", literal(say("status.stale"))),
+        (f"{quantities['same_settings'].ref}<>{yes}", literal(say("status.changed"))),
         otherwise=literal(say("status.analysed")),
     )
     quantities.add("status", formula, say("status.analysed"))
