@@ -114,5 +114,5 @@ def _fit_shares(u: Array, rest: Array) -> Array:
     mean, variance = u.mean(axis=-1), u.var(axis=-1)
     total = np.clip(mean * (1 - mean) / variance - 1, 0.05, 1e9)
     start = np.log(np.stack([mean * total, (1 - mean) * total], axis=-1))
-    phi, _ = maximum(objective, start, np.full(2, -12.0), np.full(2, 24.0))
+    phi = maximum(objective, start, np.full(2, -12.0), np.full(2, 24.0)).place
     return np.exp(phi)

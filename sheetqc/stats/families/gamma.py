@@ -7,6 +7,7 @@ from numpy.typing import ArrayLike
 from scipy import special
 
 from sheetqc.stats.families.base import Array, Family, Parameters, above_zero
+from sheetqc.stats.families.digamma import log_minus_digamma, trigamma
 from sheetqc.stats.families.gamma_tails import log_lower, log_upper, upper_tail_expression
 from sheetqc.stats.families.location_scale import needs_above_zero
 from sheetqc.stats.families.worksheet import Worksheet, above
@@ -86,16 +87,9 @@ def fit_gamma(x: Array) -> Array:
         gap = np.mean(d - np.log1p(d), axis=-1)
     a = (3 - gap + np.sqrt((gap - 3) ** 2 + 24 * gap)) / (12 * gap)
     for _ in range(30):
-        inverse = 1 / a + (log_minus_digamma(a) - gap) / (a * a * (1 / a - special.polygamma(1, a)))
+        inverse = 1 / a + (log_minus_digamma(a) - gap) / (a * a * (1 / a - trigamma(a)))
         step = np.abs(inverse * a - 1)
         a = 1 / inverse
-        if np.max(step) < 1e-8:
+        if np.max(step) < 1e-6:
             break
     return np.stack([a, mean / a], axis=-1)
-
-
-def log_minus_digamma(a: Array) -> Array:
-    """log a - psi(a), by its asymptotic series where the difference would lose digits."""
-    square = 1 / (a * a)
-    series = 0.5 / a + square * (1 / 12 - square * (1 / 120 - square * (1 / 252 - square / 240)))
-    return np.where(a > 30, series, np.log(a) - special.digamma(a))

@@ -6,7 +6,8 @@ import numpy as np
 from scipy import special
 
 from sheetqc.stats.families.base import Array
-from sheetqc.stats.families.gamma import Gamma, log_minus_digamma
+from sheetqc.stats.families.digamma import log_minus_digamma
+from sheetqc.stats.families.gamma import Gamma
 from sheetqc.stats.families.thresholded import Thresholded
 
 

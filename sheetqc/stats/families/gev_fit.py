@@ -33,7 +33,7 @@ def fit_gev(x: Array) -> Array:
     def objective(phi: Array, rows: Rows) -> tuple[Array, Array]:
         return _likelihood(at_rows(u, rows), phi)
 
-    phi, value = maximum(objective, _start(u), _LOW, _HIGH)
+    phi, value, _ = maximum(objective, _start(u), _LOW, _HIGH)
     border = _at_minus_one(u)
     phi = np.where((objective(border, np.arange(len(u)))[0] > value)[:, None], border, phi)
     scale = np.exp(phi[:, 1])

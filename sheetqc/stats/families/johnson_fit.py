@@ -39,8 +39,13 @@ def fit_su(x: Array) -> Array:
         return _su_likelihood(at_rows(u, rows), phi)
 
     starts = np.broadcast_to(np.array(_SU_GRID)[:, None, :], (len(_SU_GRID), len(u), 2))
-    phi, value = maximum(objective, best_start(objective, starts), _SU_LOW, _SU_HIGH, rounds=7)
-    phi, _ = maximum(objective, _at_limit(objective, phi, value), _SU_LOW, _SU_HIGH)
+    phi, value, left = maximum(objective, best_start(objective, starts), _SU_LOW, _SU_HIGH, rounds=6)
+    if len(left):
+
+        def remaining(place: Array, rows: Rows) -> tuple[Array, Array]:
+            return objective(place, left[rows])
+
+        phi[left] = maximum(remaining, _at_limit(remaining, phi[left], value[left]), _SU_LOW, _SU_HIGH).place
     xi, width = np.sinh(phi[:, :1]), np.exp(phi[:, 1:])
     gamma, delta, _ = _standardised(np.arcsinh((u - xi) / width))
     return np.concatenate([gamma, delta, centre + spread * xi, spread * width], axis=-1)
@@ -88,7 +93,7 @@ def fit_sb(x: Array) -> Array:
         return _sb_likelihood(at_rows(below, rows), at_rows(above, rows), phi)
 
     starts = np.broadcast_to(np.array(_SB_GRID)[:, None, :], (len(_SB_GRID), len(x), 2))
-    phi, _ = maximum(objective, best_start(objective, starts), _SB_LOW, _SB_HIGH)
+    phi = maximum(objective, best_start(objective, starts), _SB_LOW, _SB_HIGH).place
     ends = np.exp(phi)
     gamma, delta, _ = _standardised(np.log(below + ends[:, :1]) - np.log(above + ends[:, 1:]))
     width = below.max(axis=-1, keepdims=True) + ends.sum(axis=-1, keepdims=True)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -28,7 +29,15 @@ def _rising(rows: Rows) -> bool:
     return len(rows) == 1 or bool(np.all(rows[1:] > rows[:-1]))
 
 
-def maximum(objective: Objective, start: Array, low: Array, high: Array, *, rounds: int = 80) -> tuple[Array, Array]:
+class Maximum(NamedTuple):
+    """Coordinates (rows, k), value (rows,), and the numbers of the rows that were not done when the rounds ran out."""
+
+    place: Array
+    value: Array
+    unfinished: Rows
+
+
+def maximum(objective: Objective, start: Array, low: Array, high: Array, *, rounds: int = 80) -> Maximum:
     """The local maximum above each start, inside a box, by Newton steps with a line search.
 
     Second derivatives are differences of the gradient; directions of positive curvature are turned round, so that
@@ -40,9 +49,6 @@ def maximum(objective: Objective, start: Array, low: Array, high: Array, *, roun
     start : shape (rows, k)
     low, high : shape (k,) or (rows, k)
 
-    Returns
-    -------
-    coordinates (rows, k), value (rows,)
     """
     count = len(start)
     low, high = (np.broadcast_to(b, start.shape) for b in (low, high))
@@ -59,7 +65,7 @@ def maximum(objective: Objective, start: Array, low: Array, high: Array, *, roun
         active = active[(expected > _GAIN) & (gained > 0)]
         if not len(active):
             break
-    return here, value
+    return Maximum(here, value, active)
 
 
 def _newton_step(

@@ -35,8 +35,8 @@ def fit_mixture(x: Array) -> Array:
     heights = np.stack([objective(start, every)[0] for start in starts])
     order = np.argsort(-heights, axis=0)[:_CLIMBS]
     found = [maximum(objective, starts[chosen, every], _LOW, _HIGH, rounds=120) for chosen in order]
-    best = np.argmax(np.stack([value for _, value in found]), axis=0)
-    phi = np.stack([place for place, _ in found])[best, every]
+    best = np.argmax(np.stack([top.value for top in found]), axis=0)
+    phi = np.stack([top.place for top in found])[best, every]
     return _ordered(phi, centre, spread)
 
 

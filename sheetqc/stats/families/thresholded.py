@@ -103,7 +103,7 @@ class Thresholded(Family):
         starts = np.stack([self._start(u, gap) for gap in _GRID])
         start = best_start(objective, starts)
         low, high = _box(starts.shape[-1])
-        phi, _ = maximum(objective, start, low, high)
+        phi = maximum(objective, start, low, high).place
         gap = np.exp(phi[:, :1])
         inner = self._parameters(u + gap, phi[:, 1:])
         return np.concatenate([self._restored(inner, spread), smallest - spread * gap], axis=-1)

@@ -133,7 +133,7 @@ def _fit_between(x: Array, lower: float, upper: float) -> Array:
         return np.where(usable, value, -np.inf), np.where(usable[:, None], gradient, 0.0)
 
     box = np.array([400.0, 12.0])
-    phi, _ = maximum(objective, np.zeros((len(x), 2)), np.array([-400.0, -2 * np.log(WIDEST)]), box)
+    phi = maximum(objective, np.zeros((len(x), 2)), np.array([-400.0, -2 * np.log(WIDEST)]), box).place
     precision = np.exp(phi[:, 1:])
     return np.concatenate([centre + spread * phi[:, :1] / precision, spread / np.sqrt(precision)], axis=-1)
 
