@@ -70,7 +70,6 @@ class Drawing:
         )
         self.chart.set_legend({"none": True})
         self.chart.set_chartarea({"border": {"none": True}, "fill": {"color": PAPER}})
-        self.chart.show_na_as_empty_cell()
 
     def place(self, *, left: int = 54, right: int = 70, top: int = 26, bottom: int = 22) -> None:
         """Where the plot stands: what is left free on each side, in pixels."""
