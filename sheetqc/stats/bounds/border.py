@@ -11,12 +11,15 @@ Array = NDArray[np.float64]
 LogLikelihood = Callable[[Array], Array]
 """Log-likelihoods (m,) of parameter values (m, k) in unconstrained coordinates; -inf where impossible."""
 
-ROUNDS = 8
+Aims = Callable[[Array], Array]
+"""Quantities (m, q) of parameter values (m, k) whose extremes are wanted."""
+
+ROUNDS = 6
 STEEP = 50.0
 """Fall that stands for a step out of what is possible."""
 
 
-def border(log_likelihood: LogLikelihood, centre: Array, drops: Array) -> Array:
+def border(log_likelihood: LogLikelihood, centre: Array, drops: Array, aims: Aims | None = None) -> Array:
     """Points where the log-likelihood has fallen by each of `drops` from its value at the centre.
 
     Directions are spread evenly in the axes of the observed information; along each the radius is found by secant
@@ -27,6 +30,8 @@ def border(log_likelihood: LogLikelihood, centre: Array, drops: Array) -> Array:
     log_likelihood : of parameter values (m, k)
     centre : shape (k,), the maximum-likelihood point
     drops : shape (r,), each above 0
+    aims : gives quantities (m, q) of parameter values; with more than 2 parameters the directions in which each of
+        them changes fastest are added, since few directions fill many dimensions
 
     Returns
     -------
@@ -36,11 +41,23 @@ def border(log_likelihood: LogLikelihood, centre: Array, drops: Array) -> Array:
     top = float(log_likelihood(centre[None])[0])
     if not np.isfinite(top):
         return np.broadcast_to(centre, (len(drops), 1, len(centre)))
-    steps = directions(len(centre)) @ axes(log_likelihood, centre, top).T
+    turned = axes(log_likelihood, centre, top)
+    steps = directions(len(centre)) @ turned.T
+    if aims is not None and len(centre) > 2:
+        steps = np.concatenate([steps, _steepest(aims, centre, turned) @ turned.T])
     wanted = np.repeat(np.asarray(drops, dtype=float), len(steps))
     rays = np.tile(steps, (len(drops), 1))
     radius = radii(lambda t: top - log_likelihood(centre + t[:, None] * rays), wanted)
     return (centre + radius[:, None] * rays).reshape(len(drops), len(steps), len(centre))
+
+
+def _steepest(aims: Aims, centre: Array, turned: Array) -> Array:
+    """Unit vectors, in the axes, along which each quantity rises or falls fastest; shape (2 q, k)."""
+    ahead, behind = aims(centre + 0.5 * turned.T), aims(centre - 0.5 * turned.T)
+    gradient = np.nan_to_num(ahead - behind, nan=0.0, posinf=0.0, neginf=0.0).T
+    length = np.linalg.norm(gradient, axis=1, keepdims=True)
+    units = gradient / np.where(length > 0, length, 1.0)
+    return np.concatenate([units, -units])
 
 
 def directions(k: int) -> Array:
@@ -81,7 +98,7 @@ def _unit_steps(log_likelihood: LogLikelihood, centre: Array, top: float) -> Arr
     """Step in each coordinate that costs about half a unit."""
     k = len(centre)
     step = np.full(k, 0.1) * np.maximum(1.0, 0.1 * np.abs(centre))
-    for _ in range(8):
+    for _ in range(5):
         with np.errstate(all="ignore"):
             fall = top - np.minimum(log_likelihood(centre + np.diag(step)), log_likelihood(centre - np.diag(step)))
             factor = np.sqrt(0.5 / np.maximum(fall, 1e-12))

@@ -5,8 +5,8 @@ quantile, moved outwards for the lower bound of an index and inwards for its upp
 the small side. The move is `MOVE` / sqrt(n) on the root scale: the exact bound of the normal family by the noncentral
 t distribution asks for 1.16 to 1.27 from n = 15 to 300, simulated bounds of the other families for about the same.
 
-Several families: the same distance from the best of them. Nothing known: a distance of its own for each guard shape,
-calibrated by simulation (`guard_cuts.json` says how) and measured from the best of all shapes.
+Several families: about the same distance, from the best of them. Nothing known: a distance of its own for each guard
+shape, calibrated by simulation (`guard_cuts.json` says how) and measured from the best of all shapes.
 """
 
 from __future__ import annotations
@@ -25,6 +25,10 @@ from sheetqc.stats.bounds.table import guard_table
 Array = NDArray[np.float64]
 
 MOVE = 1.2
+
+SHARED = 0.15
+HEAVIEST = 0.6
+HEAVY = ("loglogistic", "logistic")
 
 LEAST = 0.05
 """Smallest distance, at low confidence."""
@@ -53,11 +57,21 @@ class GuardCuts:
         return GuardCuts(lower=self.lower[mirror], upper=self.upper[mirror])
 
 
-def family_cuts(n: int, confidence: float) -> Cuts:
-    """The cuts for families known to hold the right one."""
+def family_cuts(n: int, confidence: float, parameters: int) -> Cuts:
+    """The cuts for a family known to be the right one; each parameter beyond the second counts as another move."""
     quantile = float(special.ndtri(confidence))
-    move = MOVE / np.sqrt(n)
+    move = MOVE * max(1, parameters - 1) / np.sqrt(n)
     return Cuts(lower=_half_square(quantile + move), upper=_half_square(quantile - move))
+
+
+def shared_cuts(n: int, confidence: float, parameters: int, name: str) -> Cuts:
+    """The cuts, from the best of several families, for one of them; larger by what choosing the best takes away.
+
+    The heaviest tail of a list has no neighbour that speaks for it and needs more.
+    """
+    own = family_cuts(n, confidence, parameters)
+    more = SHARED + (HEAVIEST if name in HEAVY else 0.0)
+    return Cuts(lower=own.lower + more, upper=own.upper + SHARED)
 
 
 def guard_cuts(n: int, confidence: float) -> GuardCuts:

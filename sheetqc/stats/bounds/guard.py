@@ -14,7 +14,7 @@ from sheetqc.stats.bounds.table import COUNT, NORMAL_IQR, REACH, GuardTable, at,
 Array = NDArray[np.float64]
 
 FIT_ROUNDS = 25
-BORDER_ROUNDS = 6
+BORDER_ROUNDS = 5
 GAIN = 1e-4
 """Gain of log-likelihood below which a search ends."""
 

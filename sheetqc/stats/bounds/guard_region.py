@@ -127,12 +127,13 @@ def _triples(tail: _Tail, other: _Tail, side: float) -> Array:
 
 
 def _both_tails(lower: _Tail, upper: _Tail) -> Array:
-    """Two triples for Pp: the longest of both tails together, and the shortest, whether or not they go together."""
-    longest, shortest = int(np.argmax(upper.heavy_lengths)), int(np.argmin(upper.light_lengths))
-    wide, narrow = float(upper.heavy[longest, 1]), float(upper.light[shortest, 1])
-    return np.array(
-        [
-            [wide - lower.heavy_lengths.max(), wide, wide + upper.heavy_lengths[longest]],
-            [narrow - lower.light_lengths.min(), narrow, narrow + upper.light_lengths[shortest]],
-        ]
-    )
+    """Triples for Pp, and for Ppk with both limits: the longest of both tails together, and the shortest.
+
+    Whether or not they go together is not asked; the shortest are placed at the medians of both and between them.
+    """
+    wide = float(upper.heavy[np.argmax(upper.heavy_lengths), 1])
+    ends = (lower.light[np.argmin(lower.light_lengths), 1], upper.light[np.argmin(upper.light_lengths), 1])
+    places = np.array([wide, *np.linspace(*ends, 5)])
+    below = np.array([lower.heavy_lengths.max(), *[lower.light_lengths.min()] * 5])
+    above = np.array([upper.heavy_lengths.max(), *[upper.light_lengths.min()] * 5])
+    return np.stack([places - below, places, places + above], axis=-1)

@@ -9,6 +9,9 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 
+_ANGLES = np.arange(90) * np.pi / 45
+DIRECTIONS = np.stack([np.cos(_ANGLES), np.sin(_ANGLES)], axis=1)
+
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Region:
@@ -35,34 +38,15 @@ def region_between(fitted: Region, wider: Region, narrower: Region) -> Region:
 
 
 def extremes(triples: Array) -> Array:
-    """The triples that can be an extreme of an index for some limits.
+    """The triples that can be an extreme of an index for some limits, but for a hair's breadth.
 
     A one-sided index is a quotient of linear functions of (median, outer quantile): over a set of points its extremes
-    lie at corners of the convex hull in these two coordinates. Pp likewise in the two outer quantiles.
+    lie at corners of the convex hull in these two coordinates, which are met in one direction or another.
     """
-    if len(triples) < 4:
+    if len(triples) < 2 * len(DIRECTIONS):
         return triples
     keep = np.zeros(len(triples), dtype=bool)
-    for first, second in ((1, 2), (1, 0), (0, 2)):
-        keep[_corners(triples[:, [first, second]])] = True
+    scaled = (triples - triples.mean(axis=0)) / np.maximum(triples.std(axis=0), 1e-300)
+    for pair in ([1, 2], [1, 0]):
+        keep[np.argmax(scaled[:, pair] @ DIRECTIONS.T, axis=0)] = True
     return triples[keep]
-
-
-def _corners(points: Array) -> list[int]:
-    """Indices of the corners of the convex hull of points (m, 2) (monotone chain, Andrew 1979)."""
-    order = np.lexsort((points[:, 1], points[:, 0])).tolist()
-    place = points.tolist()
-    return list({*_chain(order, place), *_chain(order[::-1], place)})
-
-
-def _chain(order: list[int], place: list[list[float]]) -> list[int]:
-    chain: list[int] = []
-    for index in order:
-        while len(chain) > 1 and _turn(place[chain[-2]], place[chain[-1]], place[index]) <= 0:
-            chain.pop()
-        chain.append(index)
-    return chain
-
-
-def _turn(a: list[float], b: list[float], c: list[float]) -> float:
-    return (b[0] - a[0]) * (c[1] - a[1]) - (b[1] - a[1]) * (c[0] - a[0])

@@ -159,6 +159,11 @@ def between_edges(power: float) -> LogDensity:
     return lambda z: np.where(np.abs(z) < 1, power * np.log1p(-np.minimum(z * z, 1 - 1e-12)), NOWHERE)
 
 
+def between_ends(form: LogDensity) -> LogDensity:
+    """A form that lives between 0 and 1."""
+    return lambda z: np.where((z > 0) & (z < 1), form(np.clip(z, 1e-12, 1 - 1e-12)), NOWHERE)
+
+
 def folded(mean: float) -> LogDensity:
     """The size of a normal value with that mean."""
     return lambda z: np.logaddexp(normal(z - mean), normal(z + mean))
@@ -233,6 +238,8 @@ SHARP: tuple[tuple[str, LogDensity], ...] = (
     ("sharp Weibull, 1.5", above_edge(lambda z: 0.5 * np.log(z) - z**1.5)),
     ("sharp Weibull, 2", above_edge(lambda z: np.log(z) - z * z)),
     ("sharp gamma, 2", above_edge(lambda z: np.log(z) - z)),
+    ("sharp beta, 2, 5", between_ends(lambda z: np.log(z) + 4 * np.log1p(-z))),
+    ("sharp triangle, 0.3", between_ends(lambda z: np.minimum(np.log(z / 0.3), np.log1p(-z) - np.log(0.7)))),
 )
 """Skewed forms with a sharp edge, whose ends are shorter than those of soft ones: for the upper bounds only."""
 
@@ -240,6 +247,7 @@ SHARP_SYMMETRIC: tuple[tuple[str, LogDensity], ...] = (
     ("sharp uniform", soft_uniform(40)),
     ("sharp parabola", between_edges(1.0)),
     ("sharp dome", between_edges(2.5)),
+    ("sharp triangle", between_ends(lambda z: np.minimum(np.log(2 * z), np.log(2 * (1 - z))))),
 )
 """The same between two edges."""
 

@@ -16,7 +16,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from sheetqc.stats.bounds.border import border
-from sheetqc.stats.bounds.cuts import Cuts, family_cuts, guard_cuts
+from sheetqc.stats.bounds.cuts import family_cuts, guard_cuts, shared_cuts
 from sheetqc.stats.bounds.guard import guard_fits
 from sheetqc.stats.bounds.guard_region import Guard, guard_union
 from sheetqc.stats.bounds.region import Region, region_between
@@ -120,9 +120,8 @@ def model_union(
     aicc = np.array([_aicc(h, len(t), len(values)) for h, t in zip(heights, thetas, strict=True)])
     weights = np.exp(0.5 * (aicc.min() - aicc))
     weights = weights / weights.sum()
-    cuts = family_cuts(len(values), confidence)
     fits = tuple(
-        _union_fit(member, values, theta, float(height), float(score), float(weight), best, cuts, prior)
+        _union_fit(member, values, theta, float(height), float(score), float(weight), best, confidence, prior)
         for member, theta, height, score, weight in zip(candidates, thetas, heights, aicc, weights, strict=True)
     )
     guard = guard_union(guards, values, guard_cuts(len(values), confidence)) if guards else None
@@ -173,11 +172,13 @@ def _union_fit(
     aicc: float,
     weight: float,
     best: float,
-    cuts: Cuts,
+    confidence: float,
     prior: Prior,
 ) -> UnionFit:
     deficit = best - height
-    drops = [cuts.lower, cuts.upper, *(c - deficit for c in (cuts.lower, cuts.upper) if c > deficit)]
+    own = family_cuts(len(values), confidence, len(theta))
+    shared = own if prior == "model" else shared_cuts(len(values), confidence, len(theta), member.name)
+    drops = [own.lower, own.upper, *(c - deficit for c in (shared.lower, shared.upper) if c > deficit)]
     inner = member.internal(theta)
 
     floor, ceiling = _free_ends(values)
@@ -191,13 +192,18 @@ def _union_fit(
         usable = ~np.isnan(value) & ((len(theta) < 3) | ((start <= floor) & (end >= ceiling)))
         return np.where(usable, value, -np.inf)
 
-    borders = [_region(member, points) for points in member.external(border(log_likelihood, inner, np.array(drops)))]
+    def tails(phi: Array) -> Array:
+        with np.errstate(all="ignore"):
+            return np.log(np.diff(triples_of(member, member.external(phi)), axis=-1))
+
+    found = member.external(border(log_likelihood, inner, np.array(drops), tails))
+    borders = [_region(member, points) for points in found]
     fitted = _region(member, theta[None])
-    admitted = cuts.lower > deficit
+    admitted = shared.lower > deficit
     nothing = Region(points=np.empty((0, len(theta))), triples=np.empty((0, 3)))
-    shared = nothing
+    region = nothing
     if admitted and prior != "open":
-        shared = region_between(fitted, borders[2], borders[3] if len(borders) > 3 else nothing)
+        region = region_between(fitted, borders[2], borders[3] if len(borders) > 3 else nothing)
     return UnionFit(
         family=member.name,
         theta=theta,
@@ -205,7 +211,7 @@ def _union_fit(
         aicc=aicc,
         weight=weight,
         admitted=admitted,
-        region=shared,
+        region=region,
         own=region_between(fitted, borders[0], borders[1]),
     )
 
