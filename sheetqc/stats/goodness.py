@@ -14,8 +14,8 @@ from sheetqc.stats.null_distribution import has_table, tabulated_p_value
 Array = NDArray[np.float64]
 
 _USUAL_RESAMPLES = 999
-_RESAMPLES = {"normal_mixture": 199}
-"""Fewer where one fit costs a millisecond."""
+_RESAMPLES = {"normal_mixture": 199, "beta": 399}
+"""Fewer where one resample costs about a millisecond."""
 _SEED = 20260101
 _LOWEST_LOG = -745.0
 """Logarithm of the smallest positive double: where a value on the border of the support is counted."""

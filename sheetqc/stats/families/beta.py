@@ -55,13 +55,12 @@ class Beta(Family):
         return np.where(inside, value - np.log(self.upper - self.lower), -np.inf)
 
     def _cdf(self, x: Array, p: Parameters) -> Array:
-        u, rest = self._shares(x)
-        # the share counted from the nearer end
-        return np.asarray(np.where(u < 0.5, special.betainc(p[0], p[1], u), special.betaincc(p[1], p[0], rest)))
+        u, _ = self._shares(x)
+        return np.asarray(special.betainc(p[0], p[1], u))
 
     def _survival(self, x: Array, p: Parameters) -> Array:
-        u, rest = self._shares(x)
-        return np.asarray(np.where(rest < 0.5, special.betainc(p[1], p[0], rest), special.betaincc(p[0], p[1], u)))
+        _, rest = self._shares(x)
+        return np.asarray(special.betainc(p[1], p[0], rest))
 
     def _log_cdf(self, x: Array, p: Parameters) -> Array:
         return np.log(self._cdf(x, p))
