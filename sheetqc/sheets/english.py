@@ -51,6 +51,7 @@ ENGLISH: Mapping[str, str] = {
     # tables of the page
     "table.reading": "Values used",
     "table.left_out": "Left out",
+    "table.gauge": "Gauge spread, share of tolerance",
     "table.range": "Smallest, largest",
     "table.mean": "Mean",
     "table.median": "Median",
@@ -80,7 +81,7 @@ ENGLISH: Mapping[str, str] = {
     "table.in_use": "▸ ",
     "table.claimed": "Claimed by the sender: {index}",
     "caption.data": "Long dashes: limits of the drawing.",
-    "caption.steady": "Dots: control limits from the scatter within. Diamond: beyond them.",
+    "caption.steady": "Dots: control limits from the scatter within. Diamond: beyond them. Cross: other signals.",
     "caption.shape": "Line: the model in use. Triangles: its 0.135 % and 99.865 % points. Thin level line: the stretch "
     "up to a limit where nothing was measured. Dotted band: where 95 of 100 samples of this size would have each "
     "value, were the model right. Weights and p are those of the analysis.",

@@ -39,6 +39,11 @@ def data_table(job: Job, work: Workings, row: int) -> int:
     ):
         if all(key in q for key in keys):
             row = _line(job, row, say(f"table.{label}"), [(q[key], number_format) for key in keys])
+    gauge = job.assessment.gauge
+    if gauge is not None and gauge.share_of_tolerance is not None:
+        _label(job, row, say("table.gauge"))
+        job.pen.number(row, 3, gauge.share_of_tolerance, "figure", decimals.SHARE)
+        row += 1
     return row
 
 

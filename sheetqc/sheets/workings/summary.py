@@ -29,10 +29,11 @@ def add_summary(job: Job, quantities: Quantities, values: Values) -> None:
         ("median", f"MEDIAN({x})", told.median, look.mean, "Median"),
     ):
         quantities.add(key, formula, value, number_format, analysed=value, name=name)
+    # near 0 their last digits hang on the last digit of the mean, in which programs may differ
     if told.skewness is not None:
-        quantities.add("skewness", f"SKEW({x})", told.skewness, "0.00", name="Skewness")
+        quantities.add("skewness", f"ROUND(SKEW({x}),8)", round(told.skewness, 8), "0.00", name="Skewness")
     if told.kurtosis is not None:
-        quantities.add("kurtosis", f"KURT({x})", told.kurtosis, "0.00", name="Kurtosis")
+        quantities.add("kurtosis", f"ROUND(KURT({x}),8)", round(told.kurtosis, 8), "0.00", name="Kurtosis")
     _add_a_squared(job, quantities, values)
 
 
