@@ -55,12 +55,12 @@ class Beta(Family):
         return np.where(inside, value - np.log(self.upper - self.lower), -np.inf)
 
     def _cdf(self, x: Array, p: Parameters) -> Array:
-        u, _ = self._shares(x)
-        return np.asarray(special.betainc(p[0], p[1], u))
+        u, rest = self._shares(x)
+        return _share_below(p[0], p[1], u, rest)
 
     def _survival(self, x: Array, p: Parameters) -> Array:
-        _, rest = self._shares(x)
-        return np.asarray(special.betainc(p[1], p[0], rest))
+        u, rest = self._shares(x)
+        return _share_below(p[1], p[0], rest, u)
 
     def _log_cdf(self, x: Array, p: Parameters) -> Array:
         return np.log(self._cdf(x, p))
@@ -95,6 +95,16 @@ class Beta(Family):
     def support(self, theta: ArrayLike) -> tuple[Array, Array]:
         lead = np.shape(theta)[:-1]
         return np.full(lead, self.lower), np.full(lead, self.upper)
+
+
+def _share_below(a: Array, b: Array, u: Array, rest: Array) -> Array:
+    """Probability below the share u, where u + rest = 1; above one half from the other side, whose digits rest keeps."""
+    a, b, u, rest = np.broadcast_arrays(a, b, u, rest)
+    below = np.array(special.betainc(a, b, u))
+    upper = below > 0.5
+    if np.any(upper):
+        below[upper] = 1 - special.betainc(b[upper], a[upper], rest[upper])
+    return below
 
 
 def _fit_shares(u: Array, rest: Array) -> Array:
