@@ -13,12 +13,12 @@ from sheetqc.stats.bounds.table import COUNT, NORMAL_IQR, REACH, GuardTable, at,
 
 Array = NDArray[np.float64]
 
-FIT_ROUNDS = 25
+FIT_ROUNDS = 20
 BORDER_ROUNDS = 5
-GAIN = 1e-4
+GAIN = 1e-3
 """Gain of log-likelihood below which a search ends."""
 
-OUT_OF_REACH = 25.0
+OUT_OF_REACH = 15.0
 """Distance below the best from which no shape comes back."""
 
 
@@ -67,8 +67,12 @@ def guard_fits(x: Array) -> GuardFits:
     return GuardFits(table=table, location=location, scale=scale, log_likelihood=value, axes=_axes(matrix))
 
 
-def guard_border(fits: GuardFits, x: Array, rows: NDArray[np.intp], drops: Array) -> tuple[Array, Array]:
+def guard_border(
+    fits: GuardFits, x: Array, rows: NDArray[np.intp], drops: Array, *, wider: bool
+) -> tuple[Array, Array]:
     """Locations and scales, each (shapes, directions), where the log-likelihood has fallen by the drop of the shape.
+
+    Only the half of the directions is taken in which the scale grows (`wider`) or shrinks.
 
     Parameters
     ----------
@@ -78,6 +82,8 @@ def guard_border(fits: GuardFits, x: Array, rows: NDArray[np.intp], drops: Array
     drops : shape (shapes,), each above 0
     """
     steps = np.einsum("md,sed->sme", directions(2), fits.axes[rows])
+    half = np.argsort(-steps[..., 1] if wider else steps[..., 1], axis=1)[:, : steps.shape[1] // 2]
+    steps = np.take_along_axis(steps, half[..., None], axis=1)
     location, scale = fits.location[rows, None], fits.scale[rows, None]
 
     def at_radius(radius: Array) -> tuple[Array, Array]:

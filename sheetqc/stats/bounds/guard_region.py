@@ -84,10 +84,10 @@ def _tail(fits: GuardFits, x: Array, cuts: GuardCuts, reach: Array) -> _Tail:
     usual = float(fits.scale[likeliest] * reach[likeliest])
     fitted = np.array([[likeliest, fits.location[likeliest], fits.scale[likeliest]]])
     heavy, light = (
-        np.concatenate([fitted, _border(fits, x, distance + fits.log_likelihood - best)])
-        for distance, best in (
-            (cuts.lower, fits.log_likelihood[likeliest]),
-            (cuts.upper, fits.log_likelihood.max()),
+        np.concatenate([fitted, _border(fits, x, distance + fits.log_likelihood - best, wider=wider)])
+        for distance, best, wider in (
+            (cuts.lower, fits.log_likelihood[likeliest], True),
+            (cuts.upper, fits.log_likelihood.max(), False),
         )
     )
     heavy_lengths, light_lengths = (p[:, 2] * reach[p[:, 0].astype(np.intp)] for p in (heavy, light))
@@ -101,10 +101,10 @@ def _tail(fits: GuardFits, x: Array, cuts: GuardCuts, reach: Array) -> _Tail:
     )
 
 
-def _border(fits: GuardFits, x: Array, room: Array) -> Array:
+def _border(fits: GuardFits, x: Array, room: Array, *, wider: bool) -> Array:
     """Points on the borders of the shapes that have room left."""
     rows = np.flatnonzero(room > 0)
-    locations, scales = guard_border(fits, x, rows, room[rows])
+    locations, scales = guard_border(fits, x, rows, room[rows], wider=wider)
     return np.stack([np.repeat(rows, locations.shape[1]), locations.reshape(-1), scales.reshape(-1)], axis=-1)
 
 

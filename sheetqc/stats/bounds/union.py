@@ -178,7 +178,9 @@ def _union_fit(
     deficit = best - height
     own = family_cuts(len(values), confidence, len(theta))
     shared = own if prior == "model" else shared_cuts(len(values), confidence, len(theta), member.name)
-    drops = [own.lower, own.upper, *(c - deficit for c in (shared.lower, shared.upper) if c > deficit)]
+    drops = [own.lower, own.upper]
+    if prior != "open":
+        drops += [cut - deficit for cut in (shared.lower, shared.upper) if cut > deficit]
     inner = member.internal(theta)
 
     floor, ceiling = _free_ends(values)
