@@ -98,13 +98,13 @@ class Beta(Family):
 
 
 def _share_below(a: Array, b: Array, u: Array, rest: Array) -> Array:
-    """Probability below the share u, where u + rest = 1; above one half from the other side, whose digits rest keeps."""
+    """Probability below the share u, with u + rest = 1; above one half counted from the other side."""
     a, b, u, rest = np.broadcast_arrays(a, b, u, rest)
-    below = np.array(special.betainc(a, b, u))
+    below = np.array(special.betainc(a, b, u), dtype=np.float64)
     upper = below > 0.5
     if np.any(upper):
         below[upper] = 1 - special.betainc(b[upper], a[upper], rest[upper])
-    return below
+    return np.asarray(below, dtype=np.float64)
 
 
 def _fit_shares(u: Array, rest: Array) -> Array:
