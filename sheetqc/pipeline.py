@@ -66,7 +66,7 @@ def _copied(path: Path, results: Path, study: Study, found: Answer, additions: P
     """The answered copy; where nothing can be added to the original, a workbook of its own with the reason."""
     copy = _beside(results, f".answered{path.suffix.lower() if path.suffix.lower() in GRAFTABLE else '.xlsx'}")
     try:
-        taken = package.sheet_names(path)
+        taken = package.sheet_names(path, earlier_answer=False)
         names = package.free_sheet_names(sheets.wanted_names(found), taken)
         sheets.write(found, study, names, additions)
         package.graft(path, additions, copy)
@@ -97,13 +97,14 @@ def _returned(path: Path, results: Path, error: WorkbookError) -> Outcome:
         text=str(error),
         cells=() if error.cell is None else (error.cell,),
     )
+    findings = (finding, *error.findings)
     report = _beside(results, ".returned.json")
     document = {
         "schema": SCHEMA,
         "tool": tool_object(),
         "source": source_object(_source(path)),
         "reason": str(error),
-        "findings": [finding.to_dict()],
+        "findings": [f.to_dict() for f in findings],
     }
     write_json(document, report)
     return Outcome(source=path, state="returned", report=report, text=str(error))

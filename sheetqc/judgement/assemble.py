@@ -35,6 +35,8 @@ def assessment_of(asked: Characteristic, sample: Sample, terms: Terms, findings:
     findings : what reading the workbook found about it; one of the level "stop" forbids a verdict
     """
     data = data_view(asked, sample)
+    told = {condition.code for condition in data.conditions}
+    findings = tuple(f for f in findings if f.code not in told)
     stops = tuple(_as_condition(f) for f in findings if f.level == "stop")
     if not data.usable:
         return _unusable(asked, sample, terms, data, stops, findings)

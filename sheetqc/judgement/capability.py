@@ -82,7 +82,7 @@ def _model_fit(candidate: Candidate, shape: Shape, limits: Limits) -> ModelFit:
         ppk_upper=bounds.upper,
         expected_ppm=expected_rate(candidate, limits),
         objection=candidate.objection,
-        admitted=fit.admitted,
+        admitted=bool(fit.admitted),
         region=carried(fit.own_triples, limits),
     )
 

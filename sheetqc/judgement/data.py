@@ -140,8 +140,8 @@ def _form_conditions(sample: Sample, values: NDArray[np.float64], step: float | 
     if not sample.order_known or _sorted(values):
         yield Condition(
             code="order-lost",
-            reason="The values stand in the order of their size, not of their making: whether the process was steady "
-            "cannot be seen any more.",
+            reason="The values do not stand in the order of their making: whether the process was steady cannot be "
+            "seen any more.",
             remedy="Send them in the order of production.",
             cells=sample.cells[:1],
         )
