@@ -10,7 +10,9 @@ from sheetqc.pipeline import answer
 
 def watch(served: Path, *, once: bool = False, workers: int = 1) -> bool:
     """Serves a folder until stopped, or answers what is there when `once`; True when something was returned."""
-    result = folder.serve(served, answer, once=once, workers=workers, after=renew_register, edition=__version__, warm=warm)
+    result = folder.serve(
+        served, answer, once=once, workers=workers, after=renew_register, edition=__version__, warm=warm
+    )
     return bool(result.returned)
 
 

@@ -18,6 +18,10 @@ Values = NDArray[np.float64]
 Groups = tuple[tuple[int, ...], ...]
 
 
+FEWEST_IN_A_ROW = 5
+"""Points below which a movement along the row is not looked for."""
+
+
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Evidence:
     """One way a process may have moved.
@@ -39,6 +43,8 @@ def evidence_of_row(scores: Values) -> tuple[Evidence, ...]:
     scores : shape (n,), n >= 3, normal scores of the values under the model in use
     """
     n = len(scores)
+    if n < FEWEST_IN_A_ROW:
+        return ()
     within = moving_range_spread(scores).sigma
     blocks = np.array_split(scores, max(2, min(8, n // 12)))
     return (
@@ -62,14 +68,19 @@ def evidence_of_groups(scores: Values, groups: Groups) -> tuple[Evidence, ...]:
     sizes = np.array([len(row) for row in rows])
     means = np.array([row.mean() for row in rows])
     within = pooled_spread(rows).sigma
-    return (
+    alike = (
         Evidence(text="the subgroup means differ more than their members do", p_value=one_way_anova(rows).p_value),
-        _outermost(means, within / np.sqrt(sizes), "subgroup"),
-        _step(means, "subgroup"),
-        _slope(means, "subgroup"),
         Evidence(
             text="the spread differs from subgroup to subgroup", p_value=brown_forsythe(rows).p_value, sign="spread"
         ),
+    )
+    if len(groups) < FEWEST_IN_A_ROW or within == 0 or np.ptp(means) == 0:
+        return alike
+    return (
+        *alike,
+        _outermost(means, within / np.sqrt(sizes), "subgroup"),
+        _step(means, "subgroup"),
+        _slope(means, "subgroup"),
     )
 
 

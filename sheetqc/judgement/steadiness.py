@@ -53,7 +53,7 @@ def steadiness_of(asked: Characteristic, sample: Sample, shape: Shape) -> Steadi
     scores = normal_scores(values, fit)
     chart = chart_of(values, sample, groups, fit)
     evidence = evidence_of_row(scores) if groups is None else evidence_of_groups(scores, groups)
-    told = sample.order_known and len(chart.labels) >= FEWEST_POINTS
+    told = sample.order_known and len(chart.labels) >= FEWEST_POINTS and bool(evidence)
     alarms = tuple(e for e in evidence if e.p_value * len(evidence) < FALSE_ALARM) if told else ()
     cells = _cells_of_points(sample.cells, groups, len(values))
     stability = Stability(

@@ -156,3 +156,10 @@ def test_too_few_points_tell_nothing() -> None:
     found = assess(row(7))
     assert found.stability.stable is None
     assert "cannot be told" in found.stability.text
+
+
+@pytest.mark.parametrize("n", [3, 4, 6, 12])
+@pytest.mark.parametrize("size", [None, 2, 3, 5])
+def test_very_small_studies_are_taken_without_a_crash(n: int, size: int | None) -> None:
+    found = sheetqc.assess(row(n).tolist(), upper=11.0, subgroups=size)
+    assert found.verdict.state == "no verdict"

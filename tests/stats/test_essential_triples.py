@@ -20,7 +20,9 @@ def test_few_are_kept(triples: np.ndarray) -> None:
 
 
 @pytest.mark.parametrize("limits", [(None, 1.7), (None, 3.0), (None, 30.0), (0.2, None), (-3.0, None)])
-def test_one_sided_bounds_are_exact_for_any_limit(triples: np.ndarray, limits: tuple[float | None, float | None]) -> None:
+def test_one_sided_bounds_are_exact_for_any_limit(
+    triples: np.ndarray, limits: tuple[float | None, float | None]
+) -> None:
     kept = ppk_of_triples(essential_triples(triples, None, 2.5), *limits)
     full = ppk_of_triples(triples, *limits)
     assert kept.min() == full.min()

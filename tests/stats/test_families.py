@@ -171,3 +171,11 @@ def test_samples_follow_the_family(f: Family, theta: tuple[float, ...]) -> None:
     for p in (0.01, 0.2, 0.5, 0.8, 0.99):
         share = np.mean(x <= f.quantile(p, theta))
         assert abs(share - p) < 5 * np.sqrt(p * (1 - p) / x.size)
+
+
+def test_a_folded_normal_far_from_zero_is_normal() -> None:
+    p = np.array([1e-12, 0.00135, 0.5, 0.99865])
+    theta = np.array([25.0, 0.004])
+    folded, normal = family("folded_normal"), family("normal")
+    assert folded.quantile(p, theta) == pytest.approx(normal.quantile(p, theta), rel=1e-14)
+    assert folded.upper_quantile(p, theta) == pytest.approx(normal.upper_quantile(p, theta), rel=1e-14)

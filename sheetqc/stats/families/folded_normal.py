@@ -18,6 +18,10 @@ _NODES, _WEIGHTS = np.polynomial.legendre.leggauss(12)
 _NODES, _WEIGHTS = 0.5 * (_NODES + 1), 0.5 * _WEIGHTS
 
 
+NOTHING_FOLDED = 40.0
+"""Mean in standard deviations from which the folded share is 0 in double precision."""
+
+
 class FoldedNormal(Family):
     """The size |y| of a normal y with mean mu >= 0 and standard deviation sigma."""
 
@@ -86,7 +90,9 @@ class FoldedNormal(Family):
         high = (m - special.ndtri(0.5 * above)) * (1 + 1e-12)
         low = np.where(below <= 0, 0.0, low)
         tail = above if upper else below
-        return invert(self, tail, p, sigma * low, sigma * high, upper=upper, logarithmic=True)
+        found = invert(self, tail, p, sigma * low, sigma * high, upper=upper, logarithmic=True)
+        # far from 0 nothing is folded, and the normal quantile has digits that a search over x has not
+        return np.where(m > NOTHING_FOLDED, sigma * lower_tail, found)
 
     def _fit(self, x: Array) -> Array:
         return fit_folded(x)
