@@ -190,11 +190,10 @@ FAULTS: tuple[Fault, ...] = (
     Fault(
         name="measurements without a heading row",
         write=no_heading_row_of_measurements,
-        answered=True,
-        code="no-heading-row",
+        answered=False,
+        code="nothing-to-answer",
         cells=("'Run 1'!B2",),
-        words=("D1",),
-        states={"D1": "no verdict"},
+        words=("row of headings", "D1"),
     ),
     Fault(
         name="an unknown characteristic",
@@ -294,10 +293,10 @@ FAULTS: tuple[Fault, ...] = (
     Fault(
         name="no column of a listed characteristic",
         write=nothing_but_a_wrong_column,
-        answered=True,
-        code="no-values",
-        cells=("'Asked'!A3",),
-        states={"D1": "no verdict"},
+        answered=False,
+        code="nothing-to-answer",
+        cells=("'Run 1'!B2",),
+        words=("'Run 1'!B3", "D77", "D1"),
     ),
 )
 """The register of faults."""
