@@ -176,6 +176,6 @@ def test_samples_follow_the_family(f: Family, theta: tuple[float, ...]) -> None:
 def test_a_folded_normal_far_from_zero_is_normal() -> None:
     p = np.array([1e-12, 0.00135, 0.5, 0.99865])
     theta = np.array([25.0, 0.004])
-    folded, normal = family("folded_normal"), family("normal")
+    folded, normal = families.family("folded_normal"), families.family("normal")
     assert folded.quantile(p, theta) == pytest.approx(normal.quantile(p, theta), rel=1e-14)
     assert folded.upper_quantile(p, theta) == pytest.approx(normal.upper_quantile(p, theta), rel=1e-14)
