@@ -10,6 +10,8 @@ import numpy as np
 from sheetqc.assessment import Assessment, Estimate, Normality, Stability, Summary, Test
 from sheetqc.finding import Finding
 from sheetqc.judgement.capability import Capability, capability_of
+from sheetqc.judgement.charts import groups_of
+from sheetqc.judgement.claim import claim_findings
 from sheetqc.judgement.condition import Condition
 from sheetqc.judgement.data import DataView, data_view
 from sheetqc.judgement.explain import answers, capable_answer, findings_of, next_steps
@@ -57,6 +59,7 @@ def assessment_of(asked: Characteristic, sample: Sample, terms: Terms, findings:
         *steadiness.findings,
         *stream_findings,
         *why_index,
+        *claim_findings(asked, sample, groups_of(asked, sample), capability),
         *findings_of(shape, capability, asked),
     )
     return Assessment(
