@@ -9,6 +9,7 @@ import numpy as np
 
 from sheetqc.assessment import Assessment, Estimate, Normality, Stability, Summary, Test
 from sheetqc.finding import Finding
+from sheetqc.judgement.apart import apart_findings
 from sheetqc.judgement.capability import Capability, capability_of
 from sheetqc.judgement.charts import groups_of
 from sheetqc.judgement.claim import claim_findings
@@ -59,6 +60,7 @@ def assessment_of(asked: Characteristic, sample: Sample, terms: Terms, findings:
         *steadiness.findings,
         *stream_findings,
         *why_index,
+        *apart_findings(values, sample, asked.limits, shape),
         *claim_findings(asked, sample, groups_of(asked, sample), capability),
         *findings_of(shape, capability, asked),
     )
