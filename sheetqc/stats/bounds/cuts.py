@@ -26,9 +26,11 @@ Array = NDArray[np.float64]
 
 MOVE = 1.2
 
-SHARED = 0.15
-HEAVIEST = 0.6
-HEAVY = ("loglogistic", "logistic")
+SHARED = 0.1
+"""What choosing the best of several families takes away, in log-likelihood."""
+
+HEAVY = {"loglogistic": 0.6, "gumbel_min": 0.4, "logistic": 0.25, "gumbel_max": 0.15}
+"""The same again for families that have the heaviest tail of the lists they stand in: no neighbour speaks for them."""
 
 LEAST = 0.05
 """Smallest distance, at low confidence."""
@@ -65,13 +67,9 @@ def family_cuts(n: int, confidence: float, parameters: int) -> Cuts:
 
 
 def shared_cuts(n: int, confidence: float, parameters: int, name: str) -> Cuts:
-    """The cuts, from the best of several families, for one of them; larger by what choosing the best takes away.
-
-    The heaviest tail of a list has no neighbour that speaks for it and needs more.
-    """
+    """The cuts, from the best of several families, for one of them; larger by what choosing the best takes away."""
     own = family_cuts(n, confidence, parameters)
-    more = SHARED + (HEAVIEST if name in HEAVY else 0.0)
-    return Cuts(lower=own.lower + more, upper=own.upper + SHARED)
+    return Cuts(lower=own.lower + SHARED + HEAVY.get(name, 0.0), upper=own.upper + SHARED)
 
 
 def guard_cuts(n: int, confidence: float) -> GuardCuts:
