@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Iterator, Sequence
-from concurrent.futures import ProcessPoolExecutor, as_completed
+from concurrent.futures import BrokenExecutor, ProcessPoolExecutor, as_completed
 from dataclasses import dataclass
 from multiprocessing import get_context
 from pathlib import Path
@@ -79,7 +79,15 @@ def answer_job(job: Job) -> Outcome:
     """Answers one job; a function of the module, so that a process of its own can be handed it."""
     from sheetqc.pipeline import answer
 
-    return answer(job.source, job.into, stem=job.stem)
+    try:
+        return answer(job.source, job.into, stem=job.stem)
+    except OSError as error:
+        return _left(job, f"its results could not be written ({error})")
+
+
+def _left(job: Job, why: str) -> Outcome:
+    """The outcome of a job without results; the run goes on with the others."""
+    return Outcome(source=job.source, state="returned", report=job.into / f"{job.stem}.returned.json", text=why)
 
 
 def answer_all(jobs: Sequence[Job], *, workers: int = 1) -> Iterator[Outcome]:
@@ -88,5 +96,9 @@ def answer_all(jobs: Sequence[Job], *, workers: int = 1) -> Iterator[Outcome]:
         yield from map(answer_job, jobs)
         return
     with ProcessPoolExecutor(min(workers, len(jobs)), mp_context=get_context("spawn")) as pool:
-        for future in as_completed([pool.submit(answer_job, job) for job in jobs]):
-            yield future.result()
+        futures = {pool.submit(answer_job, job): job for job in jobs}
+        for future in as_completed(futures):
+            try:
+                yield future.result()
+            except BrokenExecutor:
+                yield _left(futures[future], "the process that answered it, or one beside it, ended unexpectedly")

@@ -138,6 +138,8 @@ def _blank(options: argparse.Namespace) -> int:
         raise UsageError(f"{options.file.name} should end in .xlsx")
     if options.file.exists():
         raise UsageError(f"{options.file} is there already and is left alone; choose another name")
+    if not options.file.parent.is_dir():
+        raise UsageError(f"there is no folder {options.file.parent} to write {options.file.name} into")
     blank.write(options.file)
     print(options.file)
     return DONE

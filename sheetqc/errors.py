@@ -9,7 +9,8 @@
         ├── DamagedWorkbook     truncated or corrupt
         ├── UnsafeWorkbook      breaks a limit that protects this machine
         ├── NothingToAnswer     no tag, or nothing usable below one
-        └── CannotGraft         readable, but new sheets cannot be added to a copy
+        ├── CannotGraft         readable, but new sheets cannot be added to a copy
+        └── UnforeseenTrouble   a fault of sheetqc itself
 
 Each error says where (file, sheet, cell), what was met, what was expected and what to do.
 A doubt about data is not an error: it is a `sheetqc.finding.Finding`.
@@ -125,3 +126,9 @@ class CannotGraft(WorkbookError):
     """Readable, but new sheets cannot be added to a copy."""
 
     code = "cannot-graft"
+
+
+class UnforeseenTrouble(WorkbookError):
+    """A fault of sheetqc itself, met on this workbook."""
+
+    code = "unforeseen"

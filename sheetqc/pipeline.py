@@ -6,13 +6,14 @@ import hashlib
 import json
 import os
 import tempfile
+import traceback
 from dataclasses import replace
 from pathlib import Path
 
 from sheetqc import intake, judgement, package, sheets
 from sheetqc.answer_json import answer_object, source_object, tool_object
 from sheetqc.assessment import SCHEMA, Answer
-from sheetqc.errors import CannotGraft, MissingWorkbook, WorkbookError
+from sheetqc.errors import CannotGraft, MissingWorkbook, UnforeseenTrouble, WorkbookError
 from sheetqc.finding import Finding
 from sheetqc.outcome import Outcome
 from sheetqc.study import Source, Study
@@ -47,6 +48,20 @@ def answer(path: Path, into: Path, *, stem: str | None = None) -> Outcome:
         return _answered(path, results, study, judgement.judge(study))
     except WorkbookError as error:
         return _returned(path, results, error)
+    except OSError:
+        # a full disk or a locked target is no fault of the workbook's; whoever called may try again
+        raise
+    except Exception as error:
+        return _returned(path, results, _unforeseen(error))
+
+
+def _unforeseen(error: Exception) -> WorkbookError:
+    """A fault of sheetqc itself, put as a reason: one workbook must not stop the others."""
+    last = traceback.extract_tb(error.__traceback__)[-1]
+    return UnforeseenTrouble(
+        f"sheetqc itself failed ({type(error).__name__}: {error}; {Path(last.filename).name}, line {last.lineno})",
+        advice="This is a fault of sheetqc, not of the workbook; please report it with the workbook if you may.",
+    )
 
 
 def _answered(path: Path, results: Path, study: Study, found: Answer) -> Outcome:
