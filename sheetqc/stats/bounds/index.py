@@ -81,11 +81,12 @@ def rate_bounds(union: ModelUnion, lower: float | None, upper: float | None) -> 
     """
     if lower is None and upper is None:
         raise DataError("a rate outside the limits needs a limit")
+    rates = [_family_rates(f.family, f.region.points, lower, upper) for f in union.fits if len(f.region.points)]
     if union.guard is not None:
         parts = _guard_rates(union.guard.tails, lower, upper)
-        return RateBounds(lower=float(sum(p.min() for p in parts)), upper=float(sum(p.max() for p in parts)))
-    rates = np.concatenate([_family_rates(f.family, f.region.points, lower, upper) for f in union.fits if f.admitted])
-    return RateBounds(lower=float(rates.min()), upper=float(rates.max()))
+        rates.append(np.array([sum(p.min() for p in parts), sum(p.max() for p in parts)]))
+    every = np.concatenate(rates)
+    return RateBounds(lower=float(every.min()), upper=float(every.max()))
 
 
 def _family_rates(name: str, points: Array, lower: float | None, upper: float | None) -> Array:

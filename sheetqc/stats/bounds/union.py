@@ -27,6 +27,12 @@ from sheetqc.stats.families import Family, family
 Array = NDArray[np.float64]
 Prior = Literal["open", "kind", "model"]
 
+UNGUARDED = 2.0
+"""Log-likelihood by which a candidate must surpass every guard shape to stand beside them.
+
+The guard shapes are steps of a grid; several hundred values tell the steps apart.
+"""
+
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class UnionFit:
@@ -96,8 +102,9 @@ def model_union(
 ) -> ModelUnion:
     """The union of the likelihood regions of candidate families.
 
-    With nothing known beforehand the bound rests on the guard shapes alone: they hold every candidate's shape with a
-    free origin, so that it does not depend on the list of candidates, the unit or the zero of the scale.
+    With nothing known beforehand the bound rests on the guard shapes: they hold the candidates' shapes with a free
+    origin, so that it does not depend on the list of candidates, the unit or the zero of the scale. A candidate takes
+    part beside them only where it fits markedly better than every one of them.
 
     Parameters
     ----------
@@ -116,16 +123,17 @@ def model_union(
     thetas = [member.fit(values) for member in candidates]
     heights = np.array([_height(m, values, t) for m, t in zip(candidates, thetas, strict=True)])
     guards = guard_fits(values) if prior == "open" else None
-    best = float(max(heights.max(), np.max(guards.log_likelihood) if guards else -np.inf))
+    guarded = float(np.max(guards.log_likelihood)) if guards else -np.inf
+    best = max(float(heights.max()), guarded)
     aicc = np.array([_aicc(h, len(t), len(values)) for h, t in zip(heights, thetas, strict=True)])
     weights = np.exp(0.5 * (aicc.min() - aicc))
     weights = weights / weights.sum()
     fits = tuple(
-        _union_fit(member, values, theta, float(height), float(score), float(weight), best, confidence, prior)
+        _union_fit(member, values, theta, float(height), float(score), float(weight), best, confidence, prior, guarded)
         for member, theta, height, score, weight in zip(candidates, thetas, heights, aicc, weights, strict=True)
     )
     guard = guard_union(guards, values, guard_cuts(len(values), confidence)) if guards else None
-    triples = guard.triples if guard else np.concatenate([fit.triples for fit in fits])
+    triples = np.concatenate(([guard.triples] if guard else []) + [fit.triples for fit in fits])
     return ModelUnion(
         count=len(values),
         confidence=confidence,
@@ -174,12 +182,14 @@ def _union_fit(
     best: float,
     confidence: float,
     prior: Prior,
+    guarded: float,
 ) -> UnionFit:
     deficit = best - height
     own = family_cuts(len(values), confidence, len(theta))
     shared = own if prior == "model" else shared_cuts(len(values), confidence, len(theta), member.name)
     drops = [own.lower, own.upper]
-    if prior != "open":
+    shares = shared.lower > deficit and height > guarded + UNGUARDED
+    if shares:
         drops += [cut - deficit for cut in (shared.lower, shared.upper) if cut > deficit]
     inner = member.internal(theta)
 
@@ -201,10 +211,9 @@ def _union_fit(
     found = member.external(border(log_likelihood, inner, np.array(drops), tails))
     borders = [_region(member, points) for points in found]
     fitted = _region(member, theta[None])
-    admitted = shared.lower > deficit
     nothing = Region(points=np.empty((0, len(theta))), triples=np.empty((0, 3)))
     region = nothing
-    if admitted and prior != "open":
+    if shares:
         region = region_between(fitted, borders[2], borders[3] if len(borders) > 3 else nothing)
     return UnionFit(
         family=member.name,
@@ -212,7 +221,7 @@ def _union_fit(
         log_likelihood=height,
         aicc=aicc,
         weight=weight,
-        admitted=admitted,
+        admitted=shared.lower > deficit,
         region=region,
         own=region_between(fitted, borders[0], borders[1]),
     )
