@@ -60,6 +60,9 @@ def _turn(a: tuple[float, float, int], b: tuple[float, float, int], c: tuple[flo
 
 
 def _largest_of_pairs(triples: Array) -> set[int]:
-    low, middle, high = (float(v) for v in np.median(triples, axis=0))
-    uppers, lowers = middle + GRID * (high - middle), middle - GRID * (middle - low)
-    return {int(np.argmax(ppk_of_triples(triples, b, a))) for a in uppers for b in lowers}
+    low, middle, high = triples.T
+    bottom, centre, top = np.median(triples, axis=0)
+    uppers, lowers = centre + GRID * (top - centre), centre - GRID * (centre - bottom)
+    above = (uppers[:, None] - middle) / (high - middle)
+    below = (middle - lowers[:, None]) / (middle - low)
+    return set(np.argmax(np.minimum(above[:, None], below), axis=-1).ravel().tolist())
