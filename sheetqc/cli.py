@@ -44,6 +44,7 @@ def _parser() -> argparse.ArgumentParser:
     _register_command(commands.add_parser("register", help="roll answers up into one workbook"))
     _read_command(commands.add_parser("read", help="say what was understood of a workbook, without statistics"))
     _status_command(commands.add_parser("status", help="say what a served folder holds and does"))
+    _verify_command(commands.add_parser("verify", help="recompute an answered workbook and compare"))
     return parser
 
 
@@ -97,6 +98,12 @@ def _status_command(parser: argparse.ArgumentParser) -> None:
     parser.description = "Says what a served folder holds and does."
     parser.add_argument("folder", type=Path, metavar="FOLDER")
     parser.set_defaults(run=_status)
+
+
+def _verify_command(parser: argparse.ArgumentParser) -> None:
+    parser.description = "Answers the inputs of an answered workbook anew and compares every named result."
+    parser.add_argument("file", type=Path, metavar="FILE")
+    parser.set_defaults(run=_verify)
 
 
 def _count(text: str) -> int:
@@ -179,3 +186,15 @@ def _status(options: argparse.Namespace) -> int:
         raise UsageError(f"there is no folder {options.folder}")
     print(folder.status(options.folder))
     return DONE
+
+
+def _verify(options: argparse.Namespace) -> int:
+    from sheetqc.verification import verify
+
+    if not options.file.is_file():
+        raise UsageError(f"there is no file {options.file}")
+    found = verify(options.file)
+    for difference in found.differences:
+        print(f"{difference.name}: stored {difference.stored}, recomputed {difference.recomputed}")
+    print(f"{found.compared} results compared, {len(found.differences)} differ")
+    return RETURNED if found.differences else DONE

@@ -19,7 +19,7 @@ MODULES = sorted(PACKAGE.rglob("*.py"))
 
 ROOMS = ("intake", "judgement", "sheets", "package", "folder", "register")
 RECORDS = ("finding", "study", "assessment", "outcome", "errors", "kinds", "vocabulary")
-CORRIDOR = ("pipeline", "cli", "service", "batch", "__init__", "__main__")
+CORRIDOR = ("pipeline", "cli", "service", "verification", "batch", "__init__", "__main__")
 """Modules that may know more than one room."""
 
 KNOW_NOTHING_OF_QUALITY = ("package", "folder")
