@@ -7,7 +7,7 @@ from dataclasses import replace
 
 import numpy as np
 
-from sheetqc.assessment import Assessment, Estimate, Normality, Stability, Summary, Test
+from sheetqc.assessment import Assessment, Estimate, Normality, Stability, Summary, Test, Verdict
 from sheetqc.finding import Finding
 from sheetqc.judgement.apart import apart_findings
 from sheetqc.judgement.capability import Capability, capability_of
@@ -16,6 +16,7 @@ from sheetqc.judgement.claim import claim_findings
 from sheetqc.judgement.condition import Condition
 from sheetqc.judgement.data import DataView, data_view
 from sheetqc.judgement.explain import answers, capable_answer, findings_of, next_steps
+from sheetqc.judgement.judged import Judged, judged_index
 from sheetqc.judgement.shape import Shape, Values, evened_out, shape_of
 from sheetqc.judgement.steadiness import Steadiness, steadiness_of
 from sheetqc.judgement.streams import stream_view
@@ -43,27 +44,26 @@ def assessment_of(asked: Characteristic, sample: Sample, terms: Terms, findings:
     stops = tuple(_as_condition(f) for f in findings if f.level == "stop")
     if not data.usable:
         return _unusable(asked, sample, terms, data, stops, findings)
+    return _usable(asked, sample, terms, data, stops, findings)
+
+
+def _usable(
+    asked: Characteristic,
+    sample: Sample,
+    terms: Terms,
+    data: DataView,
+    stops: tuple[Condition, ...],
+    findings: Sequence[Finding],
+) -> Assessment:
     values = np.asarray(sample.values, dtype=float)
     shape = shape_of(asked, values, data.step, terms.confidence)
     steadiness = steadiness_of(asked, sample, shape)
     capability = _capability(values, asked, shape, steadiness, terms, data)
     stream_conditions, stream_findings = stream_view(values, sample.streams, asked.unit)
     conditions = (*stops, *data.conditions, *steadiness.conditions, *stream_conditions, *shape.conditions)
-    index, why_index = _judged_index(terms, shape)
-    estimate = _judged_estimate(capability, index, values, steadiness)
-    steps = next_steps(estimate, state_of(estimate or Estimate(), terms.requirement), terms, len(values))
-    verdict = verdict_of(estimate, index, terms, conditions, steps)
-    every = (
-        *findings,
-        *(c.finding() for c in conditions if c not in stops),
-        *data.findings,
-        *steadiness.findings,
-        *stream_findings,
-        *why_index,
-        *apart_findings(values, sample, asked.limits, shape),
-        *claim_findings(asked, sample, groups_of(asked, sample), capability),
-        *findings_of(shape, capability, asked),
-    )
+    judged = judged_index(terms, shape, capability, values, steadiness)
+    verdict = _verdict(judged, terms, conditions, len(values))
+    capable = capable_answer(capability, judged.name, verdict, values, asked)
     return Assessment(
         characteristic=asked,
         sample=sample,
@@ -82,16 +82,26 @@ def assessment_of(asked: Characteristic, sample: Sample, terms: Terms, findings:
         nonconforming=capability.nonconforming,
         stability=steadiness.stability,
         verdict=verdict,
-        findings=every,
-        region=capability.region,
-        answers=answers(
-            data,
-            steadiness.stability.text,
-            shape.reason,
-            capable_answer(capability, index, verdict, values, asked),
-            verdict,
+        findings=(
+            *findings,
+            *(c.finding() for c in conditions if c not in stops),
+            *data.findings,
+            *steadiness.findings,
+            *stream_findings,
+            *judged.findings,
+            *apart_findings(values, sample, asked.limits, shape),
+            *claim_findings(asked, sample, groups_of(asked, sample), capability),
+            *findings_of(shape, capability, asked),
         ),
+        region=capability.region,
+        answers=answers(data, steadiness.stability.text, shape.reason, capable, verdict),
     )
+
+
+def _verdict(judged: Judged, terms: Terms, conditions: tuple[Condition, ...], count: int) -> Verdict:
+    state = state_of(judged.estimate or Estimate(), terms.requirement)
+    steps = next_steps(judged.estimate, state, terms, count)
+    return verdict_of(judged.estimate, judged.name, terms, conditions, steps)
 
 
 def _as_condition(finding: Finding) -> Condition:
@@ -136,31 +146,6 @@ def _capability(
     if any(c.code == "limits-crossed" for c in data.conditions):
         limits = replace(limits, lower=None, upper=None)
     return capability_of(values, limits, shape, steadiness, terms.confidence)
-
-
-def _judged_index(terms: Terms, shape: Shape) -> tuple[str, tuple[Finding, ...]]:
-    """The index the verdict is on: a requirement on Cpk is judged on Ppk where the normal model does not hold."""
-    if terms.index == "Ppk" or shape.in_use == "normal":
-        return terms.index, ()
-    return "Ppk", (
-        Finding(
-            code="judged-on-ppk",
-            level="caution",
-            text="The requirement is on Cpk, which presumes the normal model; another model is in use here, so the "
-            "verdict is on Ppk.",
-        ),
-    )
-
-
-def _judged_estimate(capability: Capability, index: str, values: Values, steadiness: Steadiness) -> Estimate | None:
-    """The judged index with bounds; those of Cpk never claim more than the models behind Ppk allow."""
-    indices = capability.indices
-    if index == "Ppk" or indices.Cpk is None or indices.Ppk is None:
-        return indices.Ppk
-    ratio = float(np.std(values, ddof=1)) / steadiness.within.sigma
-    cpk, ppk = indices.Cpk, indices.Ppk
-    lower = None if cpk.lower is None or ppk.lower is None else min(cpk.lower, ppk.lower * ratio)
-    return replace(cpk, lower=lower)
 
 
 def _summary(values: Values) -> Summary:
