@@ -15,6 +15,10 @@ Aims = Callable[[Array], Array]
 """Quantities (m, q) of parameter values (m, k) whose extremes are wanted."""
 
 ROUNDS = 6
+BENDS = 2
+INWARDS = 0.8
+"""Where on the way from the centre to an extreme rays are sent out again."""
+
 STEEP = 50.0
 """Fall that stands for a step out of what is possible."""
 
@@ -31,7 +35,8 @@ def border(log_likelihood: LogLikelihood, centre: Array, drops: Array, aims: Aim
     centre : shape (k,), the maximum-likelihood point
     drops : shape (r,), each above 0
     aims : gives quantities (m, q) of parameter values; with more than 2 parameters the directions in which each of
-        them changes fastest are added, since few directions fill many dimensions
+        them changes fastest are added, since few directions fill many dimensions, and rays are sent out again from
+        near the extremes found, since regions of such families are bent
 
     Returns
     -------
@@ -48,7 +53,33 @@ def border(log_likelihood: LogLikelihood, centre: Array, drops: Array, aims: Aim
     wanted = np.repeat(np.asarray(drops, dtype=float), len(steps))
     rays = np.tile(steps, (len(drops), 1))
     radius = radii(lambda t: top - log_likelihood(centre + t[:, None] * rays), wanted)
-    return (centre + radius[:, None] * rays).reshape(len(drops), len(steps), len(centre))
+    found = (centre + radius[:, None] * rays).reshape(len(drops), len(steps), len(centre))
+    for _ in range(BENDS if aims is not None and len(centre) > 2 else 0):
+        assert aims is not None
+        found = _bent(log_likelihood, centre, top, found, drops, aims, steps)
+    return found
+
+
+def _bent(
+    log_likelihood: LogLikelihood, centre: Array, top: float, found: Array, drops: Array, aims: Aims, steps: Array
+) -> Array:
+    """The border points with those met on rays from near the extremes among them; shape (r, more, k)."""
+    levels, _, k = found.shape
+    reached = aims(found.reshape(-1, k)).reshape(levels, -1, 2)
+    lowest = np.argmin(np.where(np.isfinite(reached), reached, np.inf), axis=1)
+    highest = np.argmax(np.where(np.isfinite(reached), reached, -np.inf), axis=1)
+    corners = np.take_along_axis(found, np.concatenate([lowest, highest], axis=1)[..., None], axis=1)
+    inner = centre + INWARDS * (corners - centre)
+    wanted = np.broadcast_to(np.asarray(drops)[:, None], inner.shape[:2])
+    outside = top - log_likelihood(inner.reshape(-1, k)).reshape(wanted.shape) >= wanted
+    inner = np.where(outside[..., None], centre, inner)
+    origins = np.repeat(inner.reshape(-1, k), len(steps), axis=0)
+    rays = np.tile(steps, (len(origins) // len(steps), 1))
+    goal = np.repeat(wanted.reshape(-1), len(steps))
+    # off the centre the fall is no parabola, and takes more rounds
+    radius = radii(lambda t: top - log_likelihood(origins + t[:, None] * rays), goal, rounds=2 * ROUNDS)
+    more = (origins + radius[:, None] * rays).reshape(levels, -1, k)
+    return np.concatenate([found, more], axis=1)
 
 
 def _steepest(aims: Aims, centre: Array, turned: Array) -> Array:

@@ -208,7 +208,7 @@ def _union_fit(
         with np.errstate(all="ignore"):
             return np.log(np.diff(triples_of(member, member.external(phi)), axis=-1))
 
-    found = member.external(border(log_likelihood, inner, np.array(drops), tails))
+    found = member.external(border(log_likelihood, inner, np.array(drops), tails if prior != "open" else None))
     borders = [_region(member, points) for points in found]
     fitted = _region(member, theta[None])
     nothing = Region(points=np.empty((0, len(theta))), triples=np.empty((0, 3)))
