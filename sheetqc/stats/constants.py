@@ -91,3 +91,19 @@ def range_moments(n: int) -> tuple[float, float]:
     d2 = float(weights @ (1 - at_most))
     second = float(weights @ (2 * r * (1 - at_most)))
     return d2, math.sqrt(second - d2 * d2)
+
+
+def range_constant(groups: int, n: int) -> float:
+    """d2*: what the mean of so many ranges of n values is divided by, so that its square is right on average.
+
+    Parameters
+    ----------
+    groups : number of ranges behind the mean
+    n : values behind each range, at least 2
+
+    Reference: Duncan (1955), Industrial Quality Control 11, 18-22, by d2*^2 = d2^2 + d3^2 / groups.
+    """
+    if groups < 1:
+        raise DataError("a mean range needs at least one range")
+    c = control_chart_constants(n)
+    return math.sqrt(c.d2**2 + c.d3**2 / groups)

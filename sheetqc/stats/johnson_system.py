@@ -26,16 +26,19 @@ LOGNORMAL_BAND = 1e-3
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Johnson:
-    """A member of the system; `scale` is Johnson's lambda. `ratio` told the form: below 1 SB, above 1 SU."""
+    """A member of the system; `scale` is Johnson's lambda.
+
+    `ratio` told the form of a fit to quantiles: below 1 SB, above 1 SU; None for a fit to moments.
+    """
 
     form: Form
     gamma: float
     delta: float
     xi: float
     scale: float
-    ratio: float
-    quantiles: tuple[float, ...]
-    """The four sample quantiles it rests on, at -3z, -z, z and 3z."""
+    ratio: float | None = None
+    quantiles: tuple[float, ...] = ()
+    """The four sample quantiles it rests on, at -3z, -z, z and 3z; none for a fit to moments."""
 
     def transform(self, x: ArrayLike) -> Array:
         """Standard normal scores; nan outside the bounds of the form. Order is kept."""
