@@ -21,6 +21,7 @@ def judge(study: Study) -> Answer:
                 study.sample(asked.id) or Sample(characteristic=asked.id, values=()),
                 terms_of(asked, study.header),
                 tuple(finding for name, finding in study.findings_of if name == asked.id),
+                next((g for g in study.gauge_studies if g.characteristic == asked.id), None),
             )
             for asked in study.characteristics
         ),

@@ -16,6 +16,7 @@ from sheetqc.judgement.claim import claim_findings
 from sheetqc.judgement.condition import Condition
 from sheetqc.judgement.data import DataView, data_view
 from sheetqc.judgement.explain import answers, capable_answer, findings_of, next_steps
+from sheetqc.judgement.gauge_view import gauge_view
 from sheetqc.judgement.judged import Judged, judged_index
 from sheetqc.judgement.shape import Shape, Values, evened_out, shape_of
 from sheetqc.judgement.steadiness import Steadiness, steadiness_of
@@ -25,10 +26,16 @@ from sheetqc.judgement.verdict import state_of, verdict_of
 from sheetqc.stats.descriptive import describe
 from sheetqc.stats.goodness import anderson_darling
 from sheetqc.stats.normality import ppcc, shapiro_wilk
-from sheetqc.study import Characteristic, Sample
+from sheetqc.study import Characteristic, GaugeStudy, Sample
 
 
-def assessment_of(asked: Characteristic, sample: Sample, terms: Terms, findings: Sequence[Finding] = ()) -> Assessment:
+def assessment_of(
+    asked: Characteristic,
+    sample: Sample,
+    terms: Terms,
+    findings: Sequence[Finding] = (),
+    gauge_study: GaugeStudy | None = None,
+) -> Assessment:
     """What is found for one characteristic.
 
     Parameters
@@ -37,6 +44,7 @@ def assessment_of(asked: Characteristic, sample: Sample, terms: Terms, findings:
     sample : its values in time order
     terms : requirement, index, confidence
     findings : what reading the workbook found about it; one of the level "stop" forbids a verdict
+    gauge_study : repeat readings of its gauge, where there are any
     """
     data = data_view(asked, sample)
     told = {condition.code for condition in data.conditions}
@@ -44,7 +52,7 @@ def assessment_of(asked: Characteristic, sample: Sample, terms: Terms, findings:
     stops = tuple(_as_condition(f) for f in findings if f.level == "stop")
     if not data.usable:
         return _unusable(asked, sample, terms, data, stops, findings)
-    return _usable(asked, sample, terms, data, stops, findings)
+    return _usable(asked, sample, terms, data, stops, findings, gauge_study)
 
 
 def _usable(
@@ -54,13 +62,22 @@ def _usable(
     data: DataView,
     stops: tuple[Condition, ...],
     findings: Sequence[Finding],
+    gauge_study: GaugeStudy | None,
 ) -> Assessment:
     values = np.asarray(sample.values, dtype=float)
     shape = shape_of(asked, values, data.step, terms.confidence)
     steadiness = steadiness_of(asked, sample, shape)
     capability = _capability(values, asked, shape, steadiness, terms, data)
     stream_conditions, stream_findings = stream_view(values, sample.streams, asked.unit)
-    conditions = (*stops, *data.conditions, *steadiness.conditions, *stream_conditions, *shape.conditions)
+    gauge = gauge_view(asked, gauge_study, float(np.std(values, ddof=1)), capability.indices.Pp)
+    conditions = (
+        *stops,
+        *data.conditions,
+        *gauge.conditions,
+        *steadiness.conditions,
+        *stream_conditions,
+        *shape.conditions,
+    )
     judged = judged_index(terms, shape, capability, values, steadiness)
     verdict = _verdict(judged, terms, conditions, len(values))
     capable = capable_answer(capability, judged.name, verdict, values, asked)
@@ -81,11 +98,13 @@ def _usable(
         indices=capability.indices,
         nonconforming=capability.nonconforming,
         stability=steadiness.stability,
+        gauge=gauge.result,
         verdict=verdict,
         findings=(
             *findings,
             *(c.finding() for c in conditions if c not in stops),
             *data.findings,
+            *gauge.findings,
             *steadiness.findings,
             *stream_findings,
             *judged.findings,
