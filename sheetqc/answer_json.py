@@ -10,6 +10,7 @@ from sheetqc.assessment import (
     SCHEMA,
     Answer,
     Assessment,
+    CountResult,
     Estimate,
     GaugeResult,
     ModelFit,
@@ -31,7 +32,7 @@ def answer_object(answer: Answer) -> Object:
         "source": source_object(answer.source),
         "study": _header(answer.header),
         "characteristics": [characteristic_object(a) for a in answer.assessments],
-        "counts": [],
+        "counts": [_counts(c) for c in answer.counts],
         "findings": [f.to_dict() for f in answer.findings],
     }
 
@@ -179,6 +180,11 @@ def _stability(stability: Stability) -> Object:
 
 def _gauge(gauge: GaugeResult | None) -> Object | None:
     return None if gauge is None else {f.name: getattr(gauge, f.name) for f in fields(gauge)}
+
+
+def _counts(found: CountResult) -> Object:
+    rows = [{f.name: getattr(row, f.name) for f in fields(row)} for row in found.categories]
+    return {"total": found.total, "categories": rows, "text": found.text}
 
 
 def _claim(asked: Characteristic) -> Object | None:

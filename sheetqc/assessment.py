@@ -242,12 +242,34 @@ class Assessment:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class CountedCategory:
+    """One category of defects; shares from 0 to 1, `lower` and `upper` hold for all categories together."""
+
+    category: str
+    count: int
+    share: float
+    lower: float
+    upper: float
+    cumulative: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class CountResult:
+    """Counts of defects, the most frequent category first."""
+
+    categories: tuple[CountedCategory, ...]
+    total: int
+    text: str = ""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class Answer:
     """The whole answer to one workbook."""
 
     source: Source
     header: Header
     assessments: tuple[Assessment, ...]
+    counts: tuple[CountResult, ...] = ()
     findings: tuple[Finding, ...] = ()
 
     def to_dict(self) -> dict[str, object]:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from sheetqc.assessment import Answer
 from sheetqc.judgement.assemble import assessment_of
+from sheetqc.judgement.counts_view import count_result
 from sheetqc.judgement.terms import terms_of
 from sheetqc.study import Sample, Study
 
@@ -12,6 +13,7 @@ __all__ = ["judge"]
 
 def judge(study: Study) -> Answer:
     """The answer to a study: an assessment for each of its characteristics, in their order."""
+    counted = tuple(count_result(block, study.header.confidence) for block in study.counts)
     return Answer(
         source=study.source,
         header=study.header,
@@ -25,5 +27,6 @@ def judge(study: Study) -> Answer:
             )
             for asked in study.characteristics
         ),
-        findings=study.findings,
+        counts=tuple(result for result, _ in counted if result is not None),
+        findings=(*study.findings, *(finding for _, finding in counted)),
     )

@@ -67,7 +67,7 @@ def _no_study() -> Finding:
     return Finding(
         code="no-gauge-study",
         level="note",
-        text="There is no gauge study in the workbook: how much of the spread is the gauge's is unknown; the index "
+        text="No gauge study was given: how much of the spread is the gauge's is unknown; the index "
         "is that of process and gauge together.",
     )
 
