@@ -51,7 +51,7 @@ def test_shared_cuts_are_larger_than_own_ones():
 
 
 def test_guard_cuts_follow_n_and_confidence():
-    sizes = [guard_cuts(n, 0.95).lower for n in (10, 30, 80, 125, 5000)]
+    sizes = [guard_cuts(n, 0.95).lower for n in (10, 30, 80, 300, 5000)]
     assert np.array_equal(sizes[0], sizes[1])
     assert np.array_equal(sizes[3], sizes[4])
     assert not np.array_equal(sizes[1], sizes[2])
