@@ -121,8 +121,10 @@ def gauge_study(
     """
     if tolerance is not None and not tolerance > 0:
         raise DataError("a tolerance is wider than 0")
-    if not 0 < confidence < 1 or not multiple > 0:
-        raise DataError("a gauge study needs a confidence between 0 and 1 and a multiple above 0")
+    if not 0 < confidence < 1 or not 0 <= alpha <= 1 or not multiple > 0:
+        raise DataError("a gauge study needs a confidence and an alpha between 0 and 1 and a multiple above 0")
+    if interaction not in ("tested", *_ALPHA):
+        raise DataError(f"the interaction is tested, kept or pooled, not {interaction!r}")
     readings, _, _ = crossed(values, parts, appraisers)
     scale = _Scale(tolerance=tolerance, multiple=multiple)
     if method == "range":

@@ -92,11 +92,15 @@ def gauge_table(readings: NDArray[np.float64], alpha: float) -> GaugeTable:
     p, o, n = readings.shape
     if o == 1 and n == 1:
         raise DataError("one appraiser and one trial: repeatability cannot be told from the parts")
-    x = readings - readings.mean()
-    of_parts, of_appraisers, of_cells = x.mean(axis=(1, 2)), x.mean(axis=(0, 2)), x.mean(axis=2)
-    ss_parts, ss_appraisers = float(o * n * np.sum(of_parts**2)), float(p * n * np.sum(of_appraisers**2))
-    rest = of_cells - of_parts[:, None] - of_appraisers
-    ss_both, ss_error = float(n * np.sum(rest**2)), float(np.sum((x - of_cells[:, :, None]) ** 2))
+    # differences from the first trial and the first appraiser: what is equal leaves exact zeros
+    within = readings - readings[:, :, :1]
+    of_cells = readings[:, :, 0] - readings.mean() + within.mean(axis=2)
+    between = of_cells - of_cells[:, :1]
+    of_appraisers = between.mean(axis=0) - between.mean()
+    rest = between - between.mean(axis=1)[:, None] - of_appraisers
+    ss_parts = float(o * n * np.sum((of_cells.mean(axis=1) - of_cells.mean()) ** 2))
+    ss_appraisers, ss_both = float(p * n * np.sum(of_appraisers**2)), float(n * np.sum(rest**2))
+    ss_error = float(np.sum((within - within.mean(axis=2, keepdims=True)) ** 2))
     df_both, df_error = (p - 1) * (o - 1), p * o * (n - 1)
     both = None
     if o > 1 and n > 1:

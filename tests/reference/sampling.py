@@ -46,7 +46,7 @@ def tolerance(check: Check) -> dict[str, Any]:
 
 
 def _natrella(n: int, coverage: float, confidence: float) -> float:
-    """The handbook's approximation (Natrella 1963), not offered; for some forty values it comes near the exact factor."""
+    """The handbook's approximation (Natrella 1963), not offered; for some forty values it comes near ours."""
     z_p, z_g = float(special.ndtri(coverage)), float(special.ndtri(confidence))
     a = 1 - z_g**2 / (2 * (n - 1))
     b = z_p**2 - z_g**2 / n
