@@ -18,7 +18,7 @@ from sheetqc.judgement.data import DataView, data_view
 from sheetqc.judgement.explain import answers, capable_answer, findings_of, next_steps
 from sheetqc.judgement.gauge_view import gauge_view
 from sheetqc.judgement.judged import Judged, judged_index
-from sheetqc.judgement.shape import Shape, Values, evened_out, shape_of
+from sheetqc.judgement.shape import Shape, Values, rounding_findings, shape_of
 from sheetqc.judgement.steadiness import Steadiness, steadiness_of
 from sheetqc.judgement.streams import stream_view
 from sheetqc.judgement.terms import Terms
@@ -91,7 +91,7 @@ def _usable(
         subgroup_count=steadiness.subgroup_count,
         subgroup_size=steadiness.subgroup_size,
         summary=_summary(values),
-        normality=_normality(values, data.step),
+        normality=_normality(values),
         models=capability.models,
         model_in_use=shape.in_use,
         model_reason=shape.reason,
@@ -105,6 +105,7 @@ def _usable(
             *(c.finding() for c in conditions if c not in stops),
             *data.findings,
             *gauge.findings,
+            *rounding_findings(values, data.step),
             *steadiness.findings,
             *stream_findings,
             *judged.findings,
@@ -180,10 +181,9 @@ def _summary(values: Values) -> Summary:
     )
 
 
-def _normality(values: Values, step: float | None) -> Normality:
-    """Tests of the normal model; on values spread within their step where they are coarsely rounded."""
-    even = evened_out(values, step)
-    a, w, r = anderson_darling(even, "normal"), shapiro_wilk(even), ppcc(even)
+def _normality(values: Values) -> Normality:
+    """Tests of the normal model on the values as read."""
+    a, w, r = anderson_darling(values, "normal"), shapiro_wilk(values), ppcc(values)
     return Normality(
         anderson_darling=Test(statistic=a.statistic, p_value=a.p_value),
         shapiro_wilk=Test(statistic=w.statistic, p_value=w.p_value),

@@ -11,9 +11,9 @@ from numpy.typing import NDArray
 from scipy.special import ndtri
 
 from sheetqc import vocabulary
-from sheetqc.finding import Cell
+from sheetqc.finding import Cell, Finding
 from sheetqc.judgement.condition import Condition
-from sheetqc.judgement.wording import listed, percent, plural, probability
+from sheetqc.judgement.wording import listed, number, percent, plural, probability
 from sheetqc.stats.bounds import ModelUnion, UnionFit, model_union
 from sheetqc.stats.families import FAMILIES, family
 from sheetqc.stats.goodness import anderson_darling
@@ -141,6 +141,23 @@ def evened_out(values: Values, step: float | None) -> Values:
         low = max(level - step / 2, 0.0) if values.min() >= 0 else level - step / 2
         spread[places] = low + (np.arange(len(places)) + 0.5) / len(places) * (level + step / 2 - low)
     return spread
+
+
+def rounding_findings(values: Values, step: float | None) -> Iterator[Finding]:
+    """That tests on the values as read object to their rounding, where they do and the shape does not."""
+    even = evened_out(values, step)
+    if step is None or even is values:
+        return
+    as_read, spread = (anderson_darling(row, "normal").p_value for row in (values, even))
+    if as_read < 0.05 <= spread:
+        yield Finding(
+            code="coarse-readings",
+            level="note",
+            text=f"The readings step by {number(step)}, {number(float(np.std(values, ddof=1)) / step, 2)} steps to a "
+            f"standard deviation. A test on the values as read objects to the rounding (normal model: p "
+            f"{probability(as_read)}); the shape was therefore tested with the readings spread evenly within their "
+            f"step (p {probability(spread)}).",
+        )
 
 
 def _nothing_fits(

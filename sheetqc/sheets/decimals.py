@@ -8,10 +8,16 @@ from dataclasses import dataclass
 from decimal import Decimal
 
 INDEX = "0.00"
+INDEX_IN_FULL = "0.0000"
+"""Where an index is listed as it is, not cut off to two decimals."""
+
 MOMENT = "0.00;-0.00;0.00"
 """Looks like an index but is rounded, not cut off."""
 PROBABILITY = '[<0.001]"< 0.001";0.000'
 RATE = '[<0.01]"< 0.01";[<10]0.00;#,##0'
+OBSERVED_RATE = "#,##0"
+"""Of a counted rate, which is a number of parts over all and can be exactly 0."""
+
 SHARE = "0%"
 COUNT = "0"
 

@@ -8,6 +8,7 @@ import sheetqc
 from sheetqc.assessment import Answer
 from sheetqc.finding import quoted
 from sheetqc.sheets.cells import Pen
+from sheetqc.sheets.decimals import INDEX, INDEX_IN_FULL
 from sheetqc.sheets.overview import write_finding
 from sheetqc.sheets.page import lines_of
 from sheetqc.sheets.words import Words
@@ -126,5 +127,6 @@ def _write_names(job: MethodJob, row: int) -> int:
         quantity, cell = named.quantity, named.quantity.cell
         pen.text(row, 2, quantity.label, "small")
         if cell.value is not None:
-            pen.formula(row, 4, f"{quoted(named.sheet)}!{cell.ref}", cell.value, "small", quantity.number_format)
+            as_shown = INDEX_IN_FULL if quantity.number_format == INDEX else quantity.number_format
+            pen.formula(row, 4, f"{quoted(named.sheet)}!{cell.ref}", cell.value, "small", as_shown)
     return row + 1

@@ -125,7 +125,7 @@ def capable_table(job: Job, work: Workings, row: int) -> int:
         n = len(job.assessment.sample.values)
         row = _three(job, row, say("table.observed", n=n), ("observed",), work, "0")
         row = _three(
-            job, row, say("table.observed_rate"), ("", "observed_lower", "observed_upper"), work, decimals.RATE
+            job, row, say("table.observed_rate"), ("", "observed_lower", "observed_upper"), work, decimals.OBSERVED_RATE
         )
     claimed = job.assessment.characteristic
     if claimed.claimed_value is not None:

@@ -97,3 +97,16 @@ def test_every_kind_can_be_judged(kind: str) -> None:
     found = sheetqc.assess(x, upper=20.0, natural_lower=0.0, kind=kind)
     assert found.models
     assert found.indices.Ppk is not None
+
+
+def test_tests_that_object_to_rounding_alone_are_explained() -> None:
+    x = np.random.default_rng(4).normal(10, 0.1, 125)
+    coarse, fine = (sheetqc.assess(np.round(x / s) * s, lower=9.0, upper=11.0, resolution=s) for s in (0.04, 0.001))
+    finding = next(f for f in coarse.findings if f.code == "coarse-readings")
+    assert "step by 0.04" in finding.text
+    assert not any(f.code == "coarse-readings" for f in fine.findings)
+    assert coarse.model_in_use == "normal"
+    assert coarse.normality.anderson_darling is not None
+    assert coarse.normality.anderson_darling.statistic == pytest.approx(
+        anderson_darling(np.round(x / 0.04) * 0.04).statistic
+    )

@@ -9,7 +9,7 @@ from scipy.special import betaincinv, ndtri
 
 from sheetqc.assessment import Estimate
 from sheetqc.sheets.cells import NONE, Column, Placed, Value
-from sheetqc.sheets.decimals import COUNT, INDEX, RATE
+from sheetqc.sheets.decimals import COUNT, INDEX, OBSERVED_RATE, RATE
 from sheetqc.sheets.expressions import filled, literal
 from sheetqc.sheets.job import Job
 from sheetqc.sheets.workings.candidates import Candidates
@@ -171,8 +171,8 @@ def add_observed(job: Job, quantities: Quantities, limits: Limits, values: Value
         no=_NO,
     )
     low, high = _clopper_pearson(count, len(data), job.assessment.confidence) if limits.any else (NONE, NONE)
-    quantities.add("observed_lower", below, low, RATE, name="Observed_ppm_lower")
-    quantities.add("observed_upper", above, high, RATE, name="Observed_ppm_upper")
+    quantities.add("observed_lower", below, low, OBSERVED_RATE, name="Observed_ppm_lower")
+    quantities.add("observed_upper", above, high, OBSERVED_RATE, name="Observed_ppm_upper")
 
 
 def _clopper_pearson(count: int, n: int, confidence: float) -> tuple[float, float]:
