@@ -38,8 +38,8 @@ def pearn_lin(index: float, n: int, off_centre: float, confidence: float = 0.95)
     ----------
     index : the estimate, above 0
     n : number of values, at least 2
-    off_centre : (mean - middle of the limits) / sigma, either sign; 0 gives the highest bound, from about 0.5 on it
-        hardly changes
+    off_centre : (mean - middle of the limits) / sigma, either sign; 0 gives the highest bound, for few values even one
+        above the estimate, since the mean is then known to lie off by chance; from about 0.5 on it hardly changes
     confidence : of the bound
 
     Raises
@@ -57,7 +57,12 @@ def pearn_lin(index: float, n: int, off_centre: float, confidence: float = 0.95)
     def excess(true: float) -> float:
         return _probability_above(index, true, n, abs(off_centre)) - (1 - confidence)
 
-    return float(brentq(excess, 0.0, index + 1.0, xtol=1e-12)) if excess(0.0) < 0 else 0.0
+    if excess(0.0) >= 0:
+        return 0.0
+    high = index + 1
+    while excess(high) < 0:
+        high *= 2
+    return float(brentq(excess, 0.0, high, xtol=1e-12))
 
 
 def _probability_above(index: float, true: float, n: int, off_centre: float) -> float:
