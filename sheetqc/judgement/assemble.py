@@ -25,7 +25,7 @@ from sheetqc.judgement.terms import Terms
 from sheetqc.judgement.verdict import state_of, verdict_of
 from sheetqc.stats.descriptive import describe
 from sheetqc.stats.goodness import anderson_darling
-from sheetqc.stats.normality import ppcc, shapiro_wilk
+from sheetqc.stats.normality import MOST_FOR_SHAPIRO_WILK, ppcc, shapiro_wilk
 from sheetqc.study import Characteristic, GaugeStudy, Sample
 
 
@@ -183,9 +183,10 @@ def _summary(values: Values) -> Summary:
 
 def _normality(values: Values) -> Normality:
     """Tests of the normal model on the values as read."""
-    a, w, r = anderson_darling(values, "normal"), shapiro_wilk(values), ppcc(values)
+    a, r = anderson_darling(values, "normal"), ppcc(values)
+    w = shapiro_wilk(values) if len(values) <= MOST_FOR_SHAPIRO_WILK else None
     return Normality(
         anderson_darling=Test(statistic=a.statistic, p_value=a.p_value),
-        shapiro_wilk=Test(statistic=w.statistic, p_value=w.p_value),
+        shapiro_wilk=None if w is None else Test(statistic=w.statistic, p_value=w.p_value),
         ppcc=Test(statistic=r.statistic, p_value=r.p_value),
     )

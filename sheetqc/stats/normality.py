@@ -17,6 +17,9 @@ from sheetqc.stats.errors import DataError
 
 Array = NDArray[np.float64]
 
+MOST_FOR_SHAPIRO_WILK = 5000
+"""Number of values up to which the distribution of W is known (Royston 1995)."""
+
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class NormalityTest:
@@ -41,8 +44,8 @@ def shapiro_wilk(x: ArrayLike) -> NormalityTest:
     """
     values = np.sort(measured_values(x, at_least=3))
     n = len(values)
-    if n > 5000:
-        raise DataError(f"Shapiro-Wilk is known for up to 5000 values, there are {n}")
+    if n > MOST_FOR_SHAPIRO_WILK:
+        raise DataError(f"Shapiro-Wilk is known for up to {MOST_FOR_SHAPIRO_WILK} values, there are {n}")
     weights = shapiro_wilk_weights(n)
     deviations = values - values.mean()
     w = min(1.0, float((weights @ deviations) ** 2 / (deviations @ deviations)))

@@ -172,3 +172,10 @@ def test_streams_alike_are_left_in_peace_in_99_of_100_studies() -> None:
 def test_wrong_calls(call: dict[str, object], words: str) -> None:
     with pytest.raises(UsageError, match=words):
         sheetqc.assess(**{"values": values(), "upper": 11.0, **call})  # type: ignore[arg-type]
+
+
+def test_many_values_are_judged_without_the_test_that_ends_at_5000() -> None:
+    found = sheetqc.assess(values(6000), lower=9.0, upper=11.0, kind="two-sided dimension")
+    assert found.normality.shapiro_wilk is None
+    assert found.normality.anderson_darling is not None
+    assert found.verdict.state == "shown"
