@@ -21,7 +21,9 @@ Array = NDArray[np.float64]
 Mapping = Callable[[Array, float], Array]
 
 SEARCH = 30.0
-"""Largest absolute lambda looked at."""
+"""Largest absolute lambda looked at, unless the values lie so close together that their powers hardly differ."""
+SPREADS = 4.0
+"""Largest absolute lambda looked at then, in standard deviations of the logarithms."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -72,10 +74,13 @@ def box_cox(x: ArrayLike, confidence: float = 0.95) -> PowerTransform:
     centred = logs - logs.mean()
 
     def profile(lam: float) -> float:
-        powers = centred if lam == 0 else np.expm1(lam * centred) / lam
-        return float(-0.5 * len(values) * math.log(np.var(powers)) - logs.sum())
+        with np.errstate(over="ignore", invalid="ignore"):
+            variance = float(np.var(centred if lam == 0 else np.expm1(lam * centred) / lam))
+        if not variance > 0 or not math.isfinite(variance):
+            return -math.inf
+        return float(-0.5 * len(values) * math.log(variance) - logs.sum())
 
-    return _fitted(profile, box_cox_forward, box_cox_backward, confidence)
+    return _fitted(profile, box_cox_forward, box_cox_backward, confidence, _reach(logs))
 
 
 def yeo_johnson(x: ArrayLike, confidence: float = 0.95) -> PowerTransform:
@@ -88,15 +93,21 @@ def yeo_johnson(x: ArrayLike, confidence: float = 0.95) -> PowerTransform:
     Reference: Yeo & Johnson (2000), Biometrika 87, 954-959.
     """
     values = measured_values(x, at_least=3)
-    slope = float(np.sum(np.sign(values) * np.log1p(np.abs(values))))
+    logs = np.sign(values) * np.log1p(np.abs(values))
+    slope = float(np.sum(logs))
 
     def profile(lam: float) -> float:
-        variance = float(np.var(yeo_johnson_forward(values, lam)))
+        with np.errstate(over="ignore", invalid="ignore"):
+            variance = float(np.var(yeo_johnson_forward(values, lam)))
         if not variance > 0 or not math.isfinite(variance):
             return -math.inf
         return -0.5 * len(values) * math.log(variance) + (lam - 1) * slope
 
-    return _fitted(profile, yeo_johnson_forward, yeo_johnson_backward, confidence)
+    return _fitted(profile, yeo_johnson_forward, yeo_johnson_backward, confidence, _reach(logs))
+
+
+def _reach(logs: Array) -> float:
+    return max(SEARCH, SPREADS / float(logs.std()))
 
 
 def box_cox_forward(x: Array, lam: float) -> Array:
@@ -131,37 +142,39 @@ def yeo_johnson_backward(y: Array, lam: float) -> Array:
 
 
 def _fitted(
-    profile: Callable[[float], float], forward: Mapping, backward: Mapping, confidence: float
+    profile: Callable[[float], float], forward: Mapping, backward: Mapping, confidence: float, reach: float
 ) -> PowerTransform:
     from scipy.optimize import minimize_scalar
 
-    grid = np.linspace(-5, 5, 41)
-    heights = [profile(lam) for lam in grid]
-    top = int(np.argmax(heights))
-    low, high = grid[max(top - 1, 0)], grid[min(top + 1, len(grid) - 1)]
+    # fine near the powers in use, coarser and coarser beyond
+    tail = np.geomspace(5, reach, 40)[1:]
+    grid = np.concatenate([-tail[::-1], np.linspace(-5, 5, 41), tail])
+    top = int(np.argmax([profile(lam) for lam in grid]))
     if top in (0, len(grid) - 1):
-        low, high = -SEARCH, SEARCH
+        raise DataError(f"no power makes these values look normal: the best one lies beyond {grid[top]:.0f}")
+    low, high = grid[top - 1], grid[top + 1]
     found = minimize_scalar(lambda lam: -profile(lam), bounds=(low, high), method="bounded", options={"xatol": 1e-10})
     lam, height = float(found.x), -float(found.fun)
     drop = 0.5 * float(special.chdtri(1, 1 - confidence))
     return PowerTransform(
         lambda_=lam,
         log_likelihood=height,
-        lower=_end(profile, lam, height - drop, -1.0),
-        upper=_end(profile, lam, height - drop, 1.0),
+        lower=_end(profile, lam, height - drop, -reach),
+        upper=_end(profile, lam, height - drop, reach),
         confidence=confidence,
         _forward=forward,
         _backward=backward,
     )
 
 
-def _end(profile: Callable[[float], float], lam: float, level: float, way: float) -> float | None:
-    """Where the profile falls to a level on one side; None when it does not within the search."""
+def _end(profile: Callable[[float], float], lam: float, level: float, reach: float) -> float | None:
+    """Where the profile falls to a level on the side of `reach`; None when it does not within it."""
     from scipy.optimize import brentq
 
-    step = 0.05
-    while profile(lam + way * step) > level:
+    step = math.copysign(0.05, reach)
+    while profile(lam + step) > level:
         step *= 2
-        if step > SEARCH:
+        if abs(step) > abs(reach):
             return None
-    return float(brentq(lambda at: profile(at) - level, lam, lam + way * step, xtol=1e-10))
+    # where the powers overflow the profile is minus infinity, with which no root can be bracketed
+    return float(brentq(lambda at: max(profile(at) - level, -1e9), lam, lam + step, xtol=1e-10))
