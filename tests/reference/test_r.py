@@ -221,7 +221,7 @@ def test_classes(x: NDArray[np.float64]) -> None:
     for closed in ("left", "right"):
         right = "TRUE" if closed == "right" else "FALSE"
         counts = from_r(f"hist({r_vector(x)}, {r_vector(edges)}, right = {right}, plot = FALSE)$counts")
-        assert list(class_counts(x, edges, closed)) == counts  # type: ignore[arg-type]
+        assert list(class_counts(x, edges, closed)) == counts
 
 
 def test_plotting_positions() -> None:

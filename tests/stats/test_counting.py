@@ -32,7 +32,7 @@ def test_none_counted_one_sided() -> None:
 )
 def test_no_interval(count: float, confidence: float, sides: int) -> None:
     with pytest.raises(DataError):
-        poisson_interval(count, confidence, sides)  # type: ignore[arg-type]
+        poisson_interval(count, confidence, sides)
 
 
 def test_dispersion_against_the_general_library() -> None:

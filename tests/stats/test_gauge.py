@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 import numpy as np
 import pytest
 from numpy.typing import NDArray
@@ -32,10 +34,10 @@ def drawn(rng: np.random.Generator, p: int = 10, o: int = 4, n: int = 3, **varia
     )
 
 
-def study(readings: NDArray[np.float64], **options: object) -> GaugeStudy:
+def study(readings: NDArray[np.float64], **options: Any) -> GaugeStudy:
     """The study of readings of shape (parts, appraisers, trials)."""
     p, o, _ = (axis.ravel() for axis in np.indices(readings.shape))
-    return gauge_study(readings.ravel(), list(p), [f"A{i}" for i in o], **options)  # type: ignore[arg-type]
+    return gauge_study(readings.ravel(), list(p), [f"A{i}" for i in o], **options)
 
 
 def test_components_add_up() -> None:
