@@ -82,3 +82,12 @@ def brown_forsythe(groups: Sequence[ArrayLike]) -> Anova:
     """
     rows = [np.asarray(group, dtype=float) for group in groups]
     return one_way_anova([np.abs(row - np.median(row)) for row in rows])
+
+
+def levene(groups: Sequence[ArrayLike]) -> Anova:
+    """The same by the distances from each group's mean: sees more in normal values, trusts less in skewed ones.
+
+    Reference: Levene (1960), in Contributions to Probability and Statistics, ed. Olkin, 278-292.
+    """
+    rows = [np.asarray(group, dtype=float) for group in groups]
+    return one_way_anova([np.abs(row - row.mean()) for row in rows])

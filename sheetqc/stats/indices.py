@@ -7,7 +7,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import ArrayLike
+from numpy.typing import ArrayLike, NDArray
 from scipy import special
 
 from sheetqc.stats.descriptive import describe
@@ -15,6 +15,8 @@ from sheetqc.stats.door import measured_values
 from sheetqc.stats.errors import DataError
 from sheetqc.stats.intervals import sigma_factors
 from sheetqc.stats.within import Spread, moving_range_spread, pooled_spread
+
+Array = NDArray[np.float64]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -34,6 +36,16 @@ class QuantileIndices:
     Ppl: float | None
     Ppu: float | None
     Ppk: float | None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class QuantileIndexArrays:
+    """Indices of the quantile method; None on a side without a limit, nan where the quantiles do not part."""
+
+    Pp: Array | None
+    Ppl: Array | None
+    Ppu: Array | None
+    Ppk: Array | None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -64,19 +76,32 @@ def quantile_capability(
 
     Reference: ISO 22514-2, the general geometric method.
     """
-    ppu = None if upper is None else _ratio(upper - median, high - median)
-    ppl = None if lower is None else _ratio(median - lower, median - low)
-    sides = [side for side in (ppl, ppu) if side is not None]
-    return QuantileIndices(
-        Pp=None if lower is None or upper is None else _ratio(upper - lower, high - low),
+    found = quantile_indices(low, median, high, lower, upper)
+    return QuantileIndices(Pp=_known(found.Pp), Ppl=_known(found.Ppl), Ppu=_known(found.Ppu), Ppk=_known(found.Ppk))
+
+
+def quantile_indices(
+    low: ArrayLike, median: ArrayLike, high: ArrayLike, lower: float | None, upper: float | None
+) -> QuantileIndexArrays:
+    """The same for arrays of quantiles, that broadcast against each other; `Ppk` is of the side that has an index."""
+    x0, x50, x1 = (np.asarray(q, dtype=float) for q in (low, median, high))
+    ppu = None if upper is None else _ratio(upper - x50, x1 - x50)
+    ppl = None if lower is None else _ratio(x50 - lower, x50 - x0)
+    return QuantileIndexArrays(
+        Pp=None if lower is None or upper is None else _ratio(np.asarray(upper - lower), x1 - x0),
         Ppl=ppl,
         Ppu=ppu,
-        Ppk=min(sides) if sides else None,
+        Ppk=ppl if ppu is None else ppu if ppl is None else np.fmin(ppl, ppu),
     )
 
 
-def _ratio(room: float, need: float) -> float | None:
-    return room / need if need > 0 and math.isfinite(need) else None
+def _ratio(room: Array, need: Array) -> Array:
+    known = (need > 0) & np.isfinite(need)
+    return np.asarray(np.where(known, room / np.where(known, need, 1.0), np.nan))
+
+
+def _known(index: Array | None) -> float | None:
+    return None if index is None or np.isnan(index) else float(index)
 
 
 def capability(
@@ -87,6 +112,7 @@ def capability(
     subgroups: Sequence[object] | None = None,
     confidence: float = 0.95,
     sides: int = 2,
+    within: Spread | None = None,
 ) -> Capability:
     """Indices under the normal model.
 
@@ -96,10 +122,11 @@ def capability(
     lower, upper, nominal : limits and target, in the unit of the values
     subgroups : a label per value for the spread within; the mean moving range when None
     confidence, sides : 2 for limits of a two-sided interval, 1 for bounds each at the confidence
+    within : the spread within by another estimator of `sheetqc.stats.within`, instead of `subgroups`
 
     Raises
     ------
-    DataError : without a limit, or with values that carry no spread
+    DataError : without a limit, with both `within` and `subgroups`, or with values that carry no spread
 
     Reference: chi-square for Pp and Cp; Bissell (1990), Applied Statistics 39, 331-340, for Ppk and Cpk of two-sided
     limits; Chou, Owen & Borrego (1990), J. Qual. Technol. 22, 223-229 (noncentral t), for one-sided ones; Boyles
@@ -110,7 +137,10 @@ def capability(
         raise DataError("an index needs a limit")
     found = describe(values)
     total = Spread(sigma=found.s, degrees=found.n - 1, method="s")
-    within = moving_range_spread(values) if subgroups is None else pooled_spread(grouped(values, subgroups))
+    if within is None:
+        within = moving_range_spread(values) if subgroups is None else pooled_spread(grouped(values, subgroups))
+    elif subgroups is not None:
+        raise DataError("the spread within is either given or taken from the subgroups")
     p = indices_of_spread(found.mean, total, found.n, lower, upper, confidence, sides)
     c = indices_of_spread(found.mean, within, found.n, lower, upper, confidence, sides)
     return Capability(

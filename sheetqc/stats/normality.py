@@ -29,6 +29,14 @@ class NormalityTest:
     p_value: float
 
 
+@dataclass(frozen=True, slots=True, kw_only=True)
+class NormalityTests:
+    """The same of many samples, in step."""
+
+    statistic: Array
+    p_value: Array
+
+
 def shapiro_wilk(x: ArrayLike) -> NormalityTest:
     """Shapiro and Wilk's W.
 
@@ -42,14 +50,39 @@ def shapiro_wilk(x: ArrayLike) -> NormalityTest:
 
     Reference: Royston (1995), Applied Statistics 44, 547-551 (algorithm AS R94).
     """
-    values = np.sort(measured_values(x, at_least=3))
-    n = len(values)
+    found = shapiro_wilk_rows(measured_values(x, at_least=3))
+    return NormalityTest(statistic=float(found.statistic), p_value=float(found.p_value))
+
+
+def shapiro_wilk_rows(x: ArrayLike) -> NormalityTests:
+    """W of many samples of one size at once.
+
+    Parameters
+    ----------
+    x : shape (..., n), 3 <= n <= 5000, each row in any order
+
+    Returns
+    -------
+    NormalityTests : arrays of shape (...)
+
+    Raises
+    ------
+    DataError : outside these sizes, for a missing or infinite value, for a row of equal values
+    """
+    values = np.sort(np.atleast_1d(np.asarray(x, dtype=float)), axis=-1)
+    n = values.shape[-1]
+    if n < 3:
+        raise DataError(f"at least 3 values are needed, there are {n}")
     if n > MOST_FOR_SHAPIRO_WILK:
         raise DataError(f"Shapiro-Wilk is known for up to {MOST_FOR_SHAPIRO_WILK} values, there are {n}")
-    weights = shapiro_wilk_weights(n)
-    deviations = values - values.mean()
-    w = min(1.0, float((weights @ deviations) ** 2 / (deviations @ deviations)))
-    return NormalityTest(statistic=w, p_value=_w_p_value(w, n))
+    if not np.all(np.isfinite(values)):
+        raise DataError("a value is missing or infinite")
+    if np.any(values[..., 0] == values[..., -1]):
+        raise DataError("all values are equal")
+    deviations = values - values.mean(axis=-1, keepdims=True)
+    squares = np.einsum("...i,...i->...", deviations, deviations)
+    w = np.minimum(1.0, (deviations @ shapiro_wilk_weights(n)) ** 2 / squares)
+    return NormalityTests(statistic=w, p_value=_w_p_value(w, n))
 
 
 def shapiro_wilk_weights(n: int) -> Array:
@@ -67,24 +100,24 @@ def shapiro_wilk_weights(n: int) -> Array:
     return np.concatenate([[-last, -next_to_last], m[2:-2] / scale, [next_to_last, last]])
 
 
-def _w_p_value(w: float, n: int) -> float:
+def _w_p_value(w: Array, n: int) -> Array:
     if n == 3:
-        return max(0.0, 6 / math.pi * (math.asin(math.sqrt(w)) - math.asin(math.sqrt(0.75))))
-    if w >= 1:
-        return 1.0
-    y = math.log1p(-w)
+        return np.maximum(0.0, 6 / math.pi * (np.arcsin(np.sqrt(w)) - math.asin(math.sqrt(0.75))))
+    # a W of 1 has the probability 1
+    y = np.log1p(-np.minimum(w, 1 - 1e-16))
+    impossible = np.zeros(np.shape(w), dtype=bool)
     if n <= 11:
         gamma = 0.459 * n - 2.273
-        if y >= gamma:
-            return 1e-99
-        y = -math.log(gamma - y)
+        impossible = np.asarray(y >= gamma)
+        y = -np.log(np.where(impossible, 1.0, gamma - y))
         mean = np.polyval([-6.714e-4, 0.025054, -0.39978, 0.544], n)
         sd = math.exp(np.polyval([-0.0020322, 0.062767, -0.77857, 1.3822], n))
     else:
         log_n = math.log(n)
         mean = np.polyval([0.0038915, -0.083751, -0.31082, -1.5861], log_n)
         sd = math.exp(np.polyval([0.0030302, -0.082676, -0.4803], log_n))
-    return float(special.ndtr(-(y - mean) / sd))
+    p = np.where(w >= 1, 1.0, special.ndtr(-(y - mean) / sd))
+    return np.asarray(np.where(impossible, 1e-99, p))
 
 
 def filliben_medians(n: int) -> Array:

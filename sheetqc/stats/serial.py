@@ -28,6 +28,8 @@ class Runs:
     """Probability of so few runs or fewer."""
     p_at_least: float
     """Probability of so many runs or more."""
+    p_normal: float
+    """Two-sided, by the normal approximation without a correction for continuity."""
 
 
 def runs_test(x: ArrayLike) -> Runs:
@@ -53,7 +55,8 @@ def runs_test(x: ArrayLike) -> Runs:
     total = above + below
     expected = 1 + 2 * above * below / total
     variance = 2 * above * below * (2 * above * below - total) / (total**2 * (total - 1))
-    few, many = runs_probability_at_most(runs, above, below), 1 - runs_probability_at_most(runs - 1, above, below)
+    z = (runs - expected) / math.sqrt(variance) if variance > 0 else 0.0
+    few, many = runs_probability_at_most(runs, above, below), runs_probability_at_least(runs, above, below)
     return Runs(
         statistic=runs,
         p_value=min(1.0, 2 * min(few, many)),
@@ -61,9 +64,10 @@ def runs_test(x: ArrayLike) -> Runs:
         below=below,
         expected=expected,
         sd=math.sqrt(variance),
-        z=(runs - expected) / math.sqrt(variance) if variance > 0 else 0.0,
+        z=z,
         p_at_most=few,
         p_at_least=many,
+        p_normal=float(2 * special.ndtr(-abs(z))),
     )
 
 
@@ -73,6 +77,12 @@ def runs_probability_at_most(runs: int, above: int, below: int) -> float:
     Reference: Wald & Wolfowitz (1940).
     """
     return min(1.0, math.fsum(_exactly(r, above, below) for r in range(2, runs + 1)))
+
+
+def runs_probability_at_least(runs: int, above: int, below: int) -> float:
+    """Probability of at least so many runs, summed from its own end, which keeps the digits of a small one."""
+    most = 2 * min(above, below) + 1
+    return min(1.0, math.fsum(_exactly(r, above, below) for r in range(max(runs, 2), most + 1)))
 
 
 def _exactly(runs: int, above: int, below: int) -> float:
@@ -93,14 +103,19 @@ def _log_choose(n: int, k: int) -> float:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class RunsUpDown:
-    """Runs up and down; `statistic` is their number among `n` values left after ties are dropped."""
+    """Runs up and down; `statistic` is their number among `n` values left after ties are dropped.
+
+    `p_value` is two-sided.
+    """
 
     statistic: int
+    p_value: float
     n: int
     expected: float
     sd: float
     z: float
     p_at_most: float
+    p_at_least: float
 
 
 def runs_up_and_down(x: ArrayLike) -> RunsUpDown:
@@ -114,13 +129,22 @@ def runs_up_and_down(x: ArrayLike) -> RunsUpDown:
     runs = 1 + int(np.sum((steps[1:] > 0) != (steps[:-1] > 0)))
     expected, sd = (2 * n - 1) / 3, math.sqrt((16 * n - 29) / 90)
     z = (runs - expected) / sd
-    exact = n <= 60
-    p = float(runs_up_and_down_cdf(n)[runs - 1]) if exact else float(special.ndtr(z + 0.5 / sd))
-    return RunsUpDown(statistic=runs, n=n, expected=expected, sd=sd, z=z, p_at_most=p)
+    if n <= 60:
+        share = _runs_up_and_down_shares(n)
+        few, many = min(1.0, math.fsum(share[:runs])), min(1.0, math.fsum(share[runs - 1 :]))
+    else:
+        few, many = float(special.ndtr(z + 0.5 / sd)), float(special.ndtr(0.5 / sd - z))
+    p = min(1.0, 2 * min(few, many))
+    return RunsUpDown(statistic=runs, p_value=p, n=n, expected=expected, sd=sd, z=z, p_at_most=few, p_at_least=many)
 
 
 def runs_up_and_down_cdf(n: int) -> NDArray[np.float64]:
-    """Probability of at most 1, 2, ..., n - 1 runs up and down in n values in random order; shape (n - 1,).
+    """Probability of at most 1, 2, ..., n - 1 runs up and down in n values in random order; shape (n - 1,)."""
+    return np.asarray(np.minimum(np.cumsum(_runs_up_and_down_shares(n)), 1.0))
+
+
+def _runs_up_and_down_shares(n: int) -> NDArray[np.float64]:
+    """Probability of exactly so many.
 
     By the recurrence of Andre (1884) for the number of permutations of n with r runs:
     P(n, r) = r P(n-1, r) + 2 P(n-1, r-1) + (n - r) P(n-1, r-2), here divided by n at each step.
@@ -132,7 +156,7 @@ def runs_up_and_down_cdf(n: int) -> NDArray[np.float64]:
         one_less = np.concatenate([[0.0], share])
         two_less = np.concatenate([[0.0, 0.0], share[:-1]]) if size > 3 else np.zeros(2)
         share = (r * before + 2 * one_less + (size - r) * two_less) / size
-    return np.asarray(np.minimum(np.cumsum(share), 1.0))
+    return share
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

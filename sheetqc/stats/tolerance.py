@@ -111,6 +111,9 @@ def distribution_free_confidence(n: int, coverage: float, rank: int = 1, sides: 
 
 def distribution_free_size(coverage: float, confidence: float, sides: int = 1) -> int:
     """Smallest number of values whose extremes hold the share `coverage` with `confidence` (Wilks 1941)."""
+    _check(2, coverage, confidence)
+    if sides not in (1, 2):
+        raise DataError(f"a tolerance interval has 1 or 2 sides, not {sides}")
     n = sides + 1
     if sides == 1:
         return math.ceil(math.log1p(-confidence) / math.log(coverage) - 1e-12)

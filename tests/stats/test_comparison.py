@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 from scipy import stats
 
-from sheetqc.stats.comparison import brown_forsythe, one_way_anova
+from sheetqc.stats.comparison import brown_forsythe, levene, one_way_anova
 from sheetqc.stats.errors import DataError
 
 rng = np.random.default_rng(31)
@@ -19,6 +19,12 @@ def test_anova() -> None:
 
 def test_brown_forsythe() -> None:
     ours, theirs = brown_forsythe(GROUPS), stats.levene(*GROUPS, center="median")
+    assert ours.statistic == pytest.approx(theirs.statistic, rel=1e-10)
+    assert ours.p_value == pytest.approx(theirs.pvalue, rel=1e-10)
+
+
+def test_levene() -> None:
+    ours, theirs = levene(GROUPS), stats.levene(*GROUPS, center="mean")
     assert ours.statistic == pytest.approx(theirs.statistic, rel=1e-10)
     assert ours.p_value == pytest.approx(theirs.pvalue, rel=1e-10)
 

@@ -5,7 +5,15 @@ import pytest
 from scipy import stats
 
 from sheetqc.stats.errors import DataError
-from sheetqc.stats.indices import bissell, capability, one_sided_index_bound, quantile_capability
+from sheetqc.stats.indices import (
+    bissell,
+    capability,
+    grouped,
+    one_sided_index_bound,
+    quantile_capability,
+    quantile_indices,
+)
+from sheetqc.stats.within import mean_range_spread
 
 
 def test_the_quantile_method_reduces_to_the_normal_one() -> None:
@@ -57,3 +65,33 @@ def test_no_limit_is_refused() -> None:
 def test_labels_must_run_in_step() -> None:
     with pytest.raises(DataError, match="labels"):
         capability([1.0, 2.0, 3.0], upper=5.0, subgroups=[1, 1])
+
+
+def test_arrays_of_quantiles() -> None:
+    low, median, high = np.array([1.0, 2.0, 3.0]), np.array([2.0, 2.0, 4.0]), np.array([4.0, 5.0, 4.0])
+    found = quantile_indices(low, median, high, 0.5, 6.0)
+    assert found.Pp == pytest.approx([5.5 / 3, 5.5 / 3, 5.5])
+    # no room between the quantiles of a side: no index of that side
+    assert found.Ppl == pytest.approx([1.5, np.nan, 3.5], nan_ok=True)
+    assert found.Ppu == pytest.approx([2.0, 4 / 3, np.nan], nan_ok=True)
+    assert found.Ppk == pytest.approx([1.5, 4 / 3, 3.5])
+    for i in range(3):
+        alone = quantile_capability(low[i], median[i], high[i], 0.5, 6.0)
+        assert alone.Ppk == pytest.approx(found.Ppk[i])  # type: ignore[index]
+        assert (alone.Ppl is None) == bool(np.isnan(found.Ppl[i]))  # type: ignore[index]
+    assert quantile_indices(low, median, high, None, 6.0).Pp is None
+    assert quantile_indices(low[:, None], 6.0, high + 5, 0.5, None).Ppk.shape == (3, 1)  # type: ignore[union-attr]
+    assert quantile_capability(1.0, 2.0, float("inf"), 0.5, 6.0).Ppu is None
+
+
+def test_another_spread_within() -> None:
+    rng = np.random.default_rng(14)
+    x, labels = rng.normal(10, 0.1, 60), np.repeat(np.arange(20), 3).tolist()
+    spread = mean_range_spread(grouped(x, labels))
+    found, usual = capability(x, 9.5, 10.5, within=spread), capability(x, 9.5, 10.5, subgroups=labels)
+    assert found.within is spread
+    assert found.Cp is not None
+    assert found.Cp.estimate == pytest.approx(1 / (6 * spread.sigma))
+    assert found.Pp == usual.Pp
+    with pytest.raises(DataError, match="either"):
+        capability(x, 9.5, 10.5, subgroups=labels, within=spread)

@@ -5,7 +5,7 @@ import pytest
 from scipy import stats
 
 from sheetqc.stats.errors import DataError
-from sheetqc.stats.normality import ppcc, ppcc_p_value, shapiro_wilk
+from sheetqc.stats.normality import ppcc, ppcc_p_value, shapiro_wilk, shapiro_wilk_rows
 
 rng = np.random.default_rng(51)
 
@@ -48,3 +48,30 @@ def test_bad_input(bad: list[float]) -> None:
 def test_too_many_for_shapiro_wilk() -> None:
     with pytest.raises(DataError, match="5000"):
         shapiro_wilk(np.arange(5001.0))
+
+
+@pytest.mark.parametrize("n", [3, 4, 8, 11, 12, 60])
+def test_rows_are_samples_of_their_own(n: int) -> None:
+    x = rng.normal(size=(2, 3, n)) ** 3
+    found = shapiro_wilk_rows(x)
+    assert found.statistic.shape == found.p_value.shape == (2, 3)
+    for place in np.ndindex(2, 3):
+        alone = stats.shapiro(x[place])
+        assert found.statistic[place] == pytest.approx(alone.statistic, rel=1e-8)
+        assert found.p_value[place] == pytest.approx(alone.pvalue, rel=1e-5, abs=1e-12)
+
+
+def test_the_ends_of_w() -> None:
+    # three evenly spaced values, and the scores themselves, leave nothing to object to
+    assert shapiro_wilk([1.0, 2.0, 3.0]).p_value == pytest.approx(1.0, abs=1e-7)
+    assert shapiro_wilk([0.0, 0.0, 0.0, 1.0, 1e9]).p_value < 1e-3
+    for n in (5, 20):
+        assert shapiro_wilk(stats.norm.ppf((np.arange(1, n + 1) - 0.375) / (n + 0.25))).p_value > 0.95
+
+
+@pytest.mark.parametrize(
+    "bad", [1.0, [[1.0, 2.0]], [[1.0, 2.0, 3.0], [2.0, 2.0, 2.0]], [[1.0, 2.0, float("nan")]], np.zeros((2, 5001))]
+)
+def test_rows_that_cannot_be_tested(bad: object) -> None:
+    with pytest.raises(DataError):
+        shapiro_wilk_rows(bad)  # type: ignore[arg-type]

@@ -1,5 +1,6 @@
 """Runs, trend and resemblance of neighbours."""
 
+import math
 from itertools import permutations
 
 import numpy as np
@@ -73,3 +74,50 @@ def test_von_neumann_sees_a_memory() -> None:
 def test_effective_count() -> None:
     assert serial.effective_count(100, 0.0) == pytest.approx(100)
     assert serial.effective_count(1000, 0.5) == pytest.approx(1000 / 3, rel=0.01)
+
+
+@pytest.mark.parametrize("n", [5, 8, 30])
+def test_both_tails_of_runs_up_and_down(n: int) -> None:
+    found = serial.runs_up_and_down(rng.normal(size=n))
+    cdf = serial.runs_up_and_down_cdf(n)
+    exactly = cdf[found.statistic - 1] - (cdf[found.statistic - 2] if found.statistic > 1 else 0)
+    assert found.p_at_most + found.p_at_least == pytest.approx(1 + exactly)
+    assert found.p_value == pytest.approx(min(1, 2 * min(found.p_at_most, found.p_at_least)))
+
+
+@pytest.mark.parametrize("n", [20, 200])
+def test_runs_up_and_down_keep_their_size(n: int) -> None:
+    p = np.array([serial.runs_up_and_down(row).p_value for row in rng.normal(size=(2000, n))])
+    # the number of runs is whole: the size falls short of 5 per cent, never far beyond it
+    assert 0.015 < np.mean(p <= 0.05) < 0.065
+
+
+@pytest.mark.parametrize("n", [12, 30, 60])
+def test_the_smallest_probabilities_of_runs_up_and_down(n: int) -> None:
+    # a climb or a fall: 2 of n! orders
+    climb = serial.runs_up_and_down(np.arange(n))
+    assert climb.p_at_most == pytest.approx(2 / math.factorial(n), rel=1e-10)
+    # a zigzag: Andre (1879), the alternating permutations; the series 4 (2 / pi)^(n + 1) (1 +- 1 / 3^(n + 1) ...)
+    zigzag = serial.runs_up_and_down(np.tile([0.0, 1.0], n // 2))
+    assert zigzag.p_at_least == pytest.approx(4 * (2 / math.pi) ** (n + 1), rel=2 * 3.0 ** -(n + 1) + 1e-10)
+
+
+def test_the_smallest_probabilities_of_runs_about_the_median() -> None:
+    # 40 values, 20 on each side: two orders keep the sides apart, two take them in turn
+    ways = math.comb(40, 20)
+    apart = serial.runs_test(np.arange(40))
+    turns = serial.runs_test(np.arange(40) * np.tile([1, -1], 20))
+    assert (apart.statistic, turns.statistic) == (2, 40)
+    assert apart.p_at_most == pytest.approx(2 / ways, rel=1e-10)
+    assert turns.p_at_least == pytest.approx(2 / ways, rel=1e-10)
+
+
+def test_the_normal_approximation_of_runs_about_the_median() -> None:
+    found = serial.runs_test(rng.normal(size=200))
+    assert found.p_normal == pytest.approx(2 * stats.norm.sf(abs(found.z)))
+    assert found.p_normal == pytest.approx(found.p_value, abs=0.15)
+
+
+def test_two_values_say_nothing_of_runs() -> None:
+    found = serial.runs_up_and_down([1.0, 2.0])
+    assert (found.statistic, found.p_value) == (1, 1.0)

@@ -91,3 +91,9 @@ def test_sizes_of_wilks(coverage: float, sides: int, n: int) -> None:
 def test_no_such_rank(n: int, rank: int, sides: int) -> None:
     with pytest.raises(DataError):
         distribution_free_confidence(n, 0.9, rank, sides)
+
+
+@pytest.mark.parametrize(("coverage", "confidence", "sides"), [(1.0, 0.95, 1), (0.9, 0.0, 2), (0.9, 0.95, 3)])
+def test_sizes_that_nobody_can_reach(coverage: float, confidence: float, sides: int) -> None:
+    with pytest.raises(DataError):
+        distribution_free_size(coverage, confidence, sides)
