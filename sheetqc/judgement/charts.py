@@ -10,9 +10,9 @@ import numpy as np
 from sheetqc.assessment import ChartTrack
 from sheetqc.judgement.shape import TAIL, Values
 from sheetqc.stats.bounds import UnionFit
-from sheetqc.stats.constants import control_chart_constants
+from sheetqc.stats.control_charts import Track, individuals_chart, mean_range_chart, mean_s_chart
 from sheetqc.stats.families import family
-from sheetqc.stats.within import Spread, mean_range_spread, mean_s_spread, moving_range_spread
+from sheetqc.stats.within import Spread
 from sheetqc.study import Characteristic, Sample
 
 Groups = tuple[tuple[int, ...], ...]
@@ -67,85 +67,57 @@ def labels_of(sample: Sample, groups: Groups) -> tuple[str, ...]:
 
 
 def chart_of(values: Values, sample: Sample, groups: Groups | None, fit: UnionFit) -> Chart:
-    """The chart of the values: of subgroups where there are any, else of the single values.
+    """The chart of the values: of subgroups where there are any with a spread within, else of the single values.
 
     Limits stand 3 standard deviations of the charted statistic from its centre (ISO 7870-2). The limits of single
     values follow the model in use where it is not the normal one: its quantiles 0.135 % and 99.865 %.
     """
-    if groups is None:
+    rows = [] if groups is None else [values[list(group)] for group in groups]
+    if groups is None or all(np.ptp(row) == 0 for row in rows):
         return _individuals(values, fit)
-    rows = [values[list(group)] for group in groups]
-    sizes = tuple(len(row) for row in rows)
-    with_range = max(sizes) <= LARGEST_FOR_RANGE and min(sizes) == max(sizes)
-    within = mean_range_spread(rows) if with_range else mean_s_spread(rows)
+    sizes = {len(row) for row in rows}
+    with_range = max(sizes) <= LARGEST_FOR_RANGE and len(sizes) == 1
+    found = mean_range_chart(rows) if with_range else mean_s_chart(rows)
     return Chart(
         title="X-bar and R" if with_range else "X-bar and s",
         labels=labels_of(sample, groups),
-        sizes=sizes,
-        location=_means(rows, sizes, within),
-        spread=_ranges(rows, within) if with_range else _deviations(rows, sizes, within),
-        within=within,
+        sizes=found.sizes,
+        location=_track("subgroup means", found.location),
+        spread=_track("subgroup ranges" if with_range else "subgroup standard deviations", found.spread),
+        within=found.within,
     )
 
 
 def _individuals(values: Values, fit: UnionFit) -> Chart:
-    n = len(values)
-    within = moving_range_spread(values)
-    k = control_chart_constants(2)
-    ranges = np.abs(np.diff(values))
-    if fit.family == "normal":
-        centre = float(values.mean())
-        lower, upper = centre - 3 * within.sigma, centre + 3 * within.sigma
-    else:
-        member = family(fit.family)
-        centre = float(member.quantile(0.5, fit.theta))
-        lower, upper = float(member.quantile(TAIL, fit.theta)), float(member.upper_quantile(TAIL, fit.theta))
+    found = individuals_chart(values)
+    location = found.location
+    if fit.family != "normal":
+        location = _by_quantiles(values, fit)
     return Chart(
         title="individuals and moving range",
-        labels=tuple(str(i + 1) for i in range(n)),
-        sizes=(1,) * n,
-        location=_level_track("individual values", values, centre, lower, upper),
-        spread=_level_track("moving range", ranges, float(ranges.mean()), k.D3 * ranges.mean(), k.D4 * ranges.mean()),
-        within=within,
+        labels=tuple(str(i + 1) for i in range(len(values))),
+        sizes=found.sizes,
+        location=_track("individual values", location),
+        spread=_track("moving range", found.spread),
+        within=found.within,
     )
 
 
-def _level_track(title: str, points: Values, centre: float, lower: float, upper: float) -> ChartTrack:
-    n = len(points)
-    return ChartTrack(
-        title=title,
-        points=tuple(float(p) for p in points),
-        centre=(float(centre),) * n,
-        lower=(float(lower),) * n,
-        upper=(float(upper),) * n,
+def _by_quantiles(values: Values, fit: UnionFit) -> Track:
+    member, level = family(fit.family), np.ones(len(values))
+    return Track(
+        points=values,
+        centre=float(member.quantile(0.5, fit.theta)) * level,
+        lower=float(member.quantile(TAIL, fit.theta)) * level,
+        upper=float(member.upper_quantile(TAIL, fit.theta)) * level,
     )
 
 
-def _means(rows: list[Values], sizes: tuple[int, ...], within: Spread) -> ChartTrack:
-    grand = float(np.concatenate(rows).mean())
-    half = 3 * within.sigma / np.sqrt(sizes)
-    return _track("subgroup means", [row.mean() for row in rows], np.full(len(rows), grand), grand - half, grand + half)
-
-
-def _ranges(rows: list[Values], within: Spread) -> ChartTrack:
-    k = [control_chart_constants(len(row)) for row in rows]
-    centre = within.sigma * np.array([c.d2 for c in k])
-    lower, upper = centre * np.array([c.D3 for c in k]), centre * np.array([c.D4 for c in k])
-    return _track("subgroup ranges", [np.ptp(row) for row in rows], centre, lower, upper)
-
-
-def _deviations(rows: list[Values], sizes: tuple[int, ...], within: Spread) -> ChartTrack:
-    k = [control_chart_constants(size) for size in sizes]
-    centre = within.sigma * np.array([c.c4 for c in k])
-    lower, upper = centre * np.array([c.B3 for c in k]), centre * np.array([c.B4 for c in k])
-    return _track("subgroup standard deviations", [row.std(ddof=1) for row in rows], centre, lower, upper)
-
-
-def _track(title: str, points: list[float], centre: Values, lower: Values, upper: Values) -> ChartTrack:
+def _track(title: str, track: Track) -> ChartTrack:
     return ChartTrack(
         title=title,
-        points=tuple(float(p) for p in points),
-        centre=tuple(float(c) for c in centre),
-        lower=tuple(float(c) for c in lower),
-        upper=tuple(float(c) for c in upper),
+        points=tuple(track.points.tolist()),
+        centre=tuple(track.centre.tolist()),
+        lower=tuple(track.lower.tolist()),
+        upper=tuple(track.upper.tolist()),
     )
