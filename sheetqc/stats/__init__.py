@@ -39,6 +39,7 @@ _EXPORTS = {
     "capability": "sheetqc.stats.indices",
     "effective_count": "sheetqc.stats.serial",
     "von_neumann": "sheetqc.stats.serial",
+    "rank_von_neumann": "sheetqc.stats.serial",
     "linear_trend": "sheetqc.stats.serial",
     "runs_up_and_down": "sheetqc.stats.serial",
     "runs_test": "sheetqc.stats.serial",

@@ -8,6 +8,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import ArrayLike
 
+from sheetqc.stats.door import measured_values
+
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class ChangePoint:
@@ -35,7 +37,7 @@ def change_point(x: ArrayLike) -> ChangePoint:
     Page (1955), Biometrika 42, 523-527; the limit distribution of the largest absolute bridge is Kolmogorov's
     (1933). For finite n the p-value errs on the safe side.
     """
-    values = np.asarray(x, dtype=float)
+    values = measured_values(x)
     n = len(values)
     sums = np.cumsum(values - values.mean())[:-1]
     after = int(np.argmax(np.abs(sums))) + 1

@@ -9,12 +9,13 @@ import numpy as np
 from numpy.typing import ArrayLike
 from scipy import special
 
+from sheetqc.stats.door import measured_values
 from sheetqc.stats.errors import DataError
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Anova:
-    """One-way analysis of variance; `statistic` is F."""
+    """One-way analysis of variance; `statistic` is F, infinite where groups differ without any spread within."""
 
     statistic: float
     p_value: float
@@ -45,13 +46,13 @@ def one_way_anova(groups: Sequence[ArrayLike]) -> Anova:
 
     Raises
     ------
-    DataError : fewer than two groups, or no group with two values
+    DataError : fewer than two groups, an empty one, no group with two values, or as for every statistic at the door
 
     Reference: Fisher (1925), Statistical Methods for Research Workers.
     """
-    rows = [np.asarray(group, dtype=float) for group in groups]
+    rows = [measured_values(group, at_least=1, varying=False) for group in groups]
     count = sum(len(row) for row in rows)
-    if len(rows) < 2 or any(len(row) == 0 for row in rows) or count <= len(rows):
+    if len(rows) < 2 or count <= len(rows):
         raise DataError("a comparison needs at least two groups, and more values than groups")
     grand = float(np.concatenate(rows).mean())
     shifted = [row - grand for row in rows]
@@ -80,7 +81,7 @@ def brown_forsythe(groups: Sequence[ArrayLike]) -> Anova:
 
     Reference: Brown & Forsythe (1974), J. Amer. Statist. Assoc. 69, 364-367.
     """
-    rows = [np.asarray(group, dtype=float) for group in groups]
+    rows = [measured_values(group, at_least=1, varying=False) for group in groups]
     return one_way_anova([np.abs(row - np.median(row)) for row in rows])
 
 
@@ -89,5 +90,5 @@ def levene(groups: Sequence[ArrayLike]) -> Anova:
 
     Reference: Levene (1960), in Contributions to Probability and Statistics, ed. Olkin, 278-292.
     """
-    rows = [np.asarray(group, dtype=float) for group in groups]
+    rows = [measured_values(group, at_least=1, varying=False) for group in groups]
     return one_way_anova([np.abs(row - row.mean()) for row in rows])

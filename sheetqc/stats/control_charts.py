@@ -13,7 +13,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from sheetqc.stats.constants import control_chart_constants
-from sheetqc.stats.door import measured_values
+from sheetqc.stats.door import SMALLEST_SPREAD, measured_values
 from sheetqc.stats.errors import DataError
 from sheetqc.stats.within import Spread, mean_range_spread, mean_s_spread, moving_range_spread
 
@@ -134,6 +134,6 @@ def _rows(subgroups: Sequence[ArrayLike]) -> list[Array]:
     if len(subgroups) < 2:
         raise DataError("a chart of subgroups needs at least two of them")
     rows = [measured_values(row, varying=False) for row in subgroups]
-    if all(np.ptp(row) == 0 for row in rows):
+    if all(np.ptp(row) < SMALLEST_SPREAD for row in rows):
         raise DataError("no subgroup has any spread within")
     return rows

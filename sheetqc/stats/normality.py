@@ -12,7 +12,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 from scipy import special
 
-from sheetqc.stats.door import measured_values
+from sheetqc.stats.door import measured_rows, measured_values
 from sheetqc.stats.errors import DataError
 
 Array = NDArray[np.float64]
@@ -67,18 +67,12 @@ def shapiro_wilk_rows(x: ArrayLike) -> NormalityTests:
 
     Raises
     ------
-    DataError : outside these sizes, for a missing or infinite value, for a row of equal values
+    DataError : outside these sizes, or when the door refuses a row
     """
-    values = np.sort(np.atleast_1d(np.asarray(x, dtype=float)), axis=-1)
+    values = np.sort(measured_rows(x, at_least=3), axis=-1)
     n = values.shape[-1]
-    if n < 3:
-        raise DataError(f"at least 3 values are needed, there are {n}")
     if n > MOST_FOR_SHAPIRO_WILK:
         raise DataError(f"Shapiro-Wilk is known for up to {MOST_FOR_SHAPIRO_WILK} values, there are {n}")
-    if not np.all(np.isfinite(values)):
-        raise DataError("a value is missing or infinite")
-    if np.any(values[..., 0] == values[..., -1]):
-        raise DataError("all values are equal")
     deviations = values - values.mean(axis=-1, keepdims=True)
     squares = np.einsum("...i,...i->...", deviations, deviations)
     w = np.minimum(1.0, (deviations @ shapiro_wilk_weights(n)) ** 2 / squares)

@@ -25,6 +25,9 @@ SEARCH = 30.0
 SPREADS = 4.0
 """Largest absolute lambda looked at then, in standard deviations of the logarithms."""
 
+CLOSEST = 1e-10
+"""Range of the logarithms, beside their size, below which rounding alone would choose the power."""
+
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class PowerTransform:
@@ -107,6 +110,8 @@ def yeo_johnson(x: ArrayLike, confidence: float = 0.95) -> PowerTransform:
 
 
 def _reach(logs: Array) -> float:
+    if float(np.ptp(logs)) < CLOSEST * max(1.0, float(np.abs(logs).max())):
+        raise DataError("the values differ too little, beside their size, for a power to change their shape")
     return max(SEARCH, SPREADS / float(logs.std()))
 
 

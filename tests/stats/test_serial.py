@@ -121,3 +121,28 @@ def test_the_normal_approximation_of_runs_about_the_median() -> None:
 def test_two_values_say_nothing_of_runs() -> None:
     found = serial.runs_up_and_down([1.0, 2.0])
     assert (found.statistic, found.p_value) == (1, 1.0)
+
+
+@pytest.mark.parametrize("n", [10, 30, 100])
+@pytest.mark.parametrize("shape", ["normal", "wild", "rounded"])
+def test_von_neumann_of_ranks_keeps_its_size_whatever_the_shape(n: int, shape: str) -> None:
+    drawn = rng.standard_t(1, size=(3000, n)) if shape == "wild" else rng.normal(size=(3000, n))
+    rows = np.round(drawn * 2) if shape == "rounded" else drawn
+    p = np.array([serial.rank_von_neumann(row).p_value for row in rows])
+    assert np.mean(p < 0.05) == pytest.approx(0.05, abs=0.014)
+
+
+def test_one_wild_value_at_the_end_is_no_memory() -> None:
+    x = np.append(np.random.default_rng(42).normal(10, 0.1, 50), 100.0)
+    # a jump that is met once where any other is met twice halves the ratio of the values, not that of the ranks
+    assert serial.von_neumann(x).p_value < 1e-3
+    assert serial.rank_von_neumann(x).p_value > 0.05
+
+
+def test_von_neumann_of_ranks_by_hand_and_by_the_order() -> None:
+    x = np.array([3.0, 1.0, 2.0, 2.0, 9.0, 8.0, 7.0, 4.0, 5.0, 6.0])
+    ranks = stats.rankdata(x)
+    ratio = np.sum(np.diff(ranks) ** 2) / np.sum((ranks - ranks.mean()) ** 2)
+    assert serial.rank_von_neumann(x).statistic == pytest.approx(ratio, rel=1e-12)
+    assert serial.rank_von_neumann(np.exp(x)) == serial.rank_von_neumann(x)
+    assert serial.rank_von_neumann(np.arange(30)).p_value < 1e-12

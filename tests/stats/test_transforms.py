@@ -159,3 +159,10 @@ def test_box_cox_refuses_values_at_or_below_zero(x: list[float]) -> None:
 def test_refusals(fit: Fit, x: list[float]) -> None:
     with pytest.raises(DataError):
         fit(x)
+
+
+@pytest.mark.parametrize("fit", [box_cox, yeo_johnson])
+def test_values_that_hardly_differ_beside_their_size(fit: Fit) -> None:
+    with pytest.raises(DataError, match="differ too little"):
+        fit(1e9 + np.arange(20) * 1e-6)
+    assert fit(1e9 + np.arange(20.0) ** 2).confidence == 0.95
