@@ -7,9 +7,9 @@ from numpy.typing import ArrayLike, NDArray
 
 from sheetqc.stats.errors import DataError
 
-LARGEST = 1e100
+LARGEST = 1e150
 """Size beyond which squares and their sums leave double precision; nothing measured comes near it."""
-SMALLEST_SPREAD = 1e-25
+SMALLEST_SPREAD = 1e-150
 """Distance of the extremes below which they do so at the other end."""
 
 

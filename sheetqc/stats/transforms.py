@@ -160,6 +160,8 @@ def _fitted(
     low, high = grid[top - 1], grid[top + 1]
     found = minimize_scalar(lambda lam: -profile(lam), bounds=(low, high), method="bounded", options={"xatol": 1e-10})
     lam, height = float(found.x), -float(found.fun)
+    if not math.isfinite(height):
+        raise DataError("the values reach too far out for their powers to be computed")
     drop = 0.5 * float(special.chdtri(1, 1 - confidence))
     return PowerTransform(
         lambda_=lam,
