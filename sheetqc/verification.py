@@ -75,7 +75,11 @@ def named_results(path: Path) -> dict[str, Value]:
         if not name.startswith("qc.") or defined.hidden:
             continue
         for sheet, address in defined.destinations:
-            value = book[sheet][address].value
+            # the library leaves the doubled quotes of a sheet name as they stand in the reference
+            name_of_sheet = sheet if sheet in book.sheetnames else sheet.replace("''", "'")
+            if name_of_sheet not in book.sheetnames:
+                continue
+            value = book[name_of_sheet][address].value
             results[name] = float(value) if isinstance(value, int | float) else None if value is None else str(value)
     book.close()
     return results

@@ -58,3 +58,14 @@ def test_a_missing_file_is_wrong_usage(tmp_path: Path) -> None:
 )
 def test_sameness(one: object, other: object, equal: bool) -> None:
     assert same(one, other) is equal  # type: ignore[arg-type]
+
+
+def test_a_sheet_with_an_apostrophe_in_its_name(tmp_path: Path) -> None:
+    book = openpyxl.load_workbook(EXAMPLE)
+    heading = [c for s in book.worksheets for row in s.iter_rows() for c in row if c.value == "H2"]
+    for each in heading:
+        each.value = "O'H2"
+    book.save(tmp_path / "named.xlsx")
+    outcome = pipeline.answer(tmp_path / "named.xlsx", tmp_path / "out")
+    assert outcome.workbook is not None
+    assert verify(outcome.workbook).differences == ()
