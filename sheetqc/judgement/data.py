@@ -12,6 +12,7 @@ from sheetqc.finding import Cell, Finding
 from sheetqc.judgement.condition import Condition
 from sheetqc.judgement.terms import COMFORTABLE_VALUES, FEWEST_VALUES
 from sheetqc.judgement.wording import listed, number, plural
+from sheetqc.stats.door import LARGEST, SMALLEST_SPREAD
 from sheetqc.study import Characteristic, Sample
 
 COARSEST = 2.0
@@ -33,10 +34,11 @@ class DataView:
 def data_view(asked: Characteristic, sample: Sample) -> DataView:
     """What the values of a characteristic can carry."""
     values = np.asarray(sample.values, dtype=float)
-    step = asked.resolution or reading_step(values)
+    sound = _of_a_size_that_can_be_computed(values)
+    step = asked.resolution or (reading_step(values) if sound else None)
     conditions = tuple(_conditions(asked, sample, values, step))
     findings = tuple(_findings(asked, sample, values))
-    usable = len(values) >= 3 and bool(np.ptp(values) > 0)
+    usable = len(values) >= 3 and sound and bool(np.ptp(values) > 0)
     return DataView(
         conditions=conditions,
         findings=findings,
@@ -78,6 +80,15 @@ def _conditions(
             cells=sample.cells,
         )
         return
+    if not _of_a_size_that_can_be_computed(values):
+        yield Condition(
+            code="absurd-values",
+            reason=f"The values run from {number(float(values.min()))} to {number(float(values.max()))}: nothing "
+            "measured has such a size, and nothing can be computed from it.",
+            remedy="Correct the values or their unit.",
+            cells=_widest(sample, values),
+        )
+        return
     if np.ptp(values) == 0:
         yield Condition(
             code="all-equal",
@@ -95,6 +106,19 @@ def _conditions(
             f"{COMFORTABLE_VALUES - len(values)}.",
         )
     yield from _form_conditions(sample, values, step)
+
+
+def _of_a_size_that_can_be_computed(values: NDArray[np.float64]) -> bool:
+    """Whether squares of the values and of their spread stay within double precision."""
+    if len(values) < 2:
+        return True
+    spread = float(values.max() / 2 - values.min() / 2)
+    return bool(np.max(np.abs(values)) <= LARGEST) and (spread == 0 or spread >= SMALLEST_SPREAD)
+
+
+def _widest(sample: Sample, values: NDArray[np.float64]) -> tuple[Cell, ...]:
+    place = int(np.argmax(np.abs(values)))
+    return sample.cells[place : place + 1]
 
 
 def _limit_conditions(asked: Characteristic) -> Iterator[Condition]:

@@ -11,14 +11,14 @@ from scipy.special import ndtr
 from sheetqc.stats.change_point import change_point
 from sheetqc.stats.comparison import brown_forsythe, one_way_anova
 from sheetqc.stats.descriptive import lag_one_correlation
-from sheetqc.stats.serial import linear_trend, von_neumann
+from sheetqc.stats.serial import linear_trend, rank_von_neumann
 from sheetqc.stats.within import moving_range_spread, pooled_spread
 
 Values = NDArray[np.float64]
 Groups = tuple[tuple[int, ...], ...]
 
 
-FEWEST_IN_A_ROW = 5
+FEWEST_IN_A_ROW = 10
 """Points below which a movement along the row is not looked for."""
 
 
@@ -111,5 +111,5 @@ def _slope(points: Values, word: str) -> Evidence:
 def _memory(points: Values, word: str) -> Evidence:
     return Evidence(
         text=f"each {word} resembles the one before it (lag-1 correlation {lag_one_correlation(points):.2f})",
-        p_value=von_neumann(points).p_value,
+        p_value=rank_von_neumann(points).p_value,
     )

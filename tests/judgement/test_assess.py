@@ -179,3 +179,15 @@ def test_many_values_are_judged_without_the_test_that_ends_at_5000() -> None:
     assert found.normality.shapiro_wilk is None
     assert found.normality.anderson_darling is not None
     assert found.verdict.state == "shown"
+
+
+@pytest.mark.parametrize("wild", [1e200, -1e307, 1e160])
+def test_a_value_of_a_size_nothing_measured_has_is_told(wild: float) -> None:
+    found = sheetqc.assess([*values(40), wild], upper=11.0)
+    assert found.verdict.state == "no verdict"
+    assert any(f.code == "absurd-values" for f in found.findings)
+
+
+def test_values_that_differ_by_next_to_nothing_are_told() -> None:
+    found = sheetqc.assess((np.arange(40) * 1e-160).tolist(), upper=1.0)
+    assert any(f.code == "absurd-values" for f in found.findings)

@@ -100,3 +100,16 @@ def test_what_cannot_follow_is_no_longer_shown(answered: tuple[Study, Path, Path
     moved = answered[3]
     assert _named(moved, name, "Expected_ppm_upper") == "–"
     assert "What-if" in str(moved[f"QC {name}"]["H5"].value)
+
+
+@office
+def test_crossed_limits_leave_no_error_on_the_page(tmp_path: Path) -> None:
+    _, study = made_answer(bore(copied=()))
+    (asked,) = study.characteristics
+    crossed = replace(asked, limits=replace(asked.limits, lower=asked.limits.upper, upper=asked.limits.lower), cells=())
+    study = replace(study, characteristics=(crossed,))
+    copy = _written(judgement.judge(study), study, tmp_path)
+    (fresh,) = converted([copy], "xlsx", tmp_path)
+    count, wrong = differences(copy, fresh)
+    assert count > 500
+    assert wrong == []

@@ -151,8 +151,8 @@ def add_observed(job: Job, quantities: Quantities, limits: Limits, values: Value
         outside |= data > upper.number
     count, n = int(outside.sum()), quantities["n"]
     formula = (
-        f"IF({limits.count}=0,{_NO},IF(ISNUMBER({lower.ref}),SUMPRODUCT(--({x}<{lower.ref})),0)"
-        f"+IF(ISNUMBER({upper.ref}),SUMPRODUCT(--({x}>{upper.ref})),0))"
+        f"IF({limits.count}=0,{_NO},SUMPRODUCT(--((({x}<{lower.ref})*ISNUMBER({lower.ref})"
+        f"+({x}>{upper.ref})*ISNUMBER({upper.ref}))>0)))"
     )
     c = quantities.add("observed", formula, count if limits.any else NONE, COUNT, name="Observed")
     confidence = quantities["confidence"]
